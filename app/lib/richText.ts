@@ -4,6 +4,8 @@
  */
 export interface TextRun {
   text: string;
+  /** Where the run begins in the notation. */
+  start: number;
   style: "plain" | "italic" | "superscript" | "subscript";
 }
 
@@ -27,14 +29,16 @@ export function textRuns(notation: string): TextRun[] {
   const runs: TextRun[] = [];
   let end = 0;
   for (const match of notation.matchAll(pattern)) {
-    if (match.index > end) runs.push({ text: notation.slice(end, match.index), style: "plain" });
+    if (match.index > end) runs.push({ text: notation.slice(end, match.index), start: end, style: "plain" });
     const [whole, italic, raised, lowered, digits] = match;
-    if (italic !== undefined) runs.push({ text: italic, style: "italic" });
-    else if (lowered !== undefined) runs.push({ text: lowered, style: "subscript" });
-    else runs.push({ text: raised ?? [...digits].map((digit) => ordinary[digit]).join(""), style: "superscript" });
+    const start = match.index;
+    if (italic !== undefined) runs.push({ text: italic, start, style: "italic" });
+    else if (lowered !== undefined) runs.push({ text: lowered, start, style: "subscript" });
+    else
+      runs.push({ text: raised ?? [...digits].map((digit) => ordinary[digit]).join(""), start, style: "superscript" });
     end = match.index + whole.length;
   }
-  if (end < notation.length) runs.push({ text: notation.slice(end), style: "plain" });
+  if (end < notation.length) runs.push({ text: notation.slice(end), start: end, style: "plain" });
   return runs;
 }
 

@@ -66,7 +66,7 @@ describe("printed numbers", () => {
 
 describe("symbols and units", () => {
   it("are set italic, raised and lowered from one notation", () => {
-    expect(textRuns("*µ*_{n} / cm⁻² s⁻¹")).toEqual([
+    expect(textRuns("*µ*_{n} / cm⁻² s⁻¹").map(({ text, style }) => ({ text, style }))).toEqual([
       { text: "µ", style: "italic" },
       { text: "n", style: "subscript" },
       { text: " / cm", style: "plain" },

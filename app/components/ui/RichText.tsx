@@ -15,5 +15,5 @@ function Run({ run }: { run: TextRun }) {
 
 /** Text with symbols, units and powers of ten set as the trade sets them; notation of `richText.ts`. */
 export function RichText({ text }: { text: string }) {
-  return textRuns(text).map((run, position) => <Run key={`${position}:${run.text}`} run={run} />);
+  return textRuns(text).map((run) => <Run key={run.start} run={run} />);
 }
