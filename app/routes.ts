@@ -1,0 +1,13 @@
+import { index, layout, type RouteConfig, route } from "@react-router/dev/routes";
+
+export default [
+  layout("routes/public/layout.tsx", [index("routes/public/landing.tsx"), route("*", "routes/public/notFound.tsx")]),
+  route("demo", "routes/public/demo.ts"),
+  route("theme", "routes/public/theme.ts"),
+  route("sign-out", "routes/account/signOut.ts"),
+  route("lab/:labId", "routes/lab/layout.tsx", [
+    index("routes/lab/index.tsx"),
+    route("people", "routes/lab/people.tsx"),
+    route("activity", "routes/lab/activity.tsx"),
+  ]),
+] satisfies RouteConfig;
