@@ -2,6 +2,22 @@
 export * from "./constants.ts";
 export * from "./result.ts";
 export * from "./scenario/device.ts";
+export * from "./scenario/errors.ts";
+export * from "./scenario/frequencies.ts";
+export * from "./scenario/hash.ts";
+export * from "./scenario/paths.ts";
 export * from "./scenario/quantities.ts";
+export * from "./scenario/resolve.ts";
 export type * from "./scenario/resolved.ts";
-export * from "./scenario/schema.ts";
+export type * from "./scenario/schema.ts";
+export {
+  biasSchema,
+  formatName,
+  limits,
+  modelKinds,
+  scenarioSchema,
+  spectrumRequestSchema,
+  techniques,
+} from "./scenario/schema.ts";
+export { type SolvedSpectra, type SolveOptions, solve, solveSpectra } from "./solve.ts";
+export * from "./version.ts";

@@ -14,6 +14,8 @@ export interface Quantity {
   readonly max: number;
   /** Start of an open range: the minimum itself is refused. */
   readonly aboveMin?: true;
+  /** Zero is permitted though it lies below the range. */
+  readonly orZero?: true;
   readonly integer?: true;
   /** null may stand for "none", "ideal" or "infinite"; the words say which. */
   readonly nullMeans?: string;
@@ -25,7 +27,7 @@ export interface Quantity {
 const density = { unit: "cm⁻³", min: 0, max: 1e22, default: 0 } as const;
 const states = { unit: "cm⁻³", min: 1e12, max: 1e23 } as const;
 const mobility = { unit: "cm²/Vs", min: 1e-12, max: 1e6 } as const;
-const ionMobility = { unit: "cm²/Vs", min: 1e-20, max: 1, default: 0 } as const;
+const ionMobility = { unit: "cm²/Vs", min: 1e-20, max: 1, orZero: true, default: 0 } as const;
 const lifetime = { unit: "ns", min: 1e-6, max: 1e12 } as const;
 const velocity = { unit: "cm/s", min: 0, max: 1e9 } as const;
 const energy = { unit: "eV", min: 0, max: 10, linear: true } as const;
@@ -127,6 +129,25 @@ export const quantities = {
     aboveMin: true,
   },
 
+  afterLayer: {
+    label: "layer in front of the interface",
+    symbol: "k",
+    unit: "1",
+    min: 0,
+    max: 98,
+    integer: true,
+    linear: true,
+  },
+  absorber: {
+    label: "index of the absorber",
+    symbol: "k_abs",
+    unit: "1",
+    min: 0,
+    max: 99,
+    integer: true,
+    linear: true,
+  },
+
   fluxPerCm2S: { label: "photon flux", symbol: "Φ", ...flux },
   modulationDepth: { label: "modulation depth", symbol: "δΦ/Φ", ...fraction, default: 0.05 },
   wavelengthNm: { label: "wavelength", symbol: "λ", unit: "nm", min: 1, max: 1e6, linear: true },
@@ -178,7 +199,6 @@ export const quantities = {
     min: 1,
     max: 200,
     default: 10,
-    integer: true,
     linear: true,
   },
   frequencyHz: { label: "frequency", symbol: "f", ...frequency },
@@ -204,12 +224,25 @@ export const quantities = {
 
 export type QuantityName = keyof typeof quantities;
 
+/** Whether a number is permitted by its row. */
+export function isPermitted(quantity: Quantity, value: number): boolean {
+  if (quantity.orZero && value === 0) return true;
+  const inside = quantity.aboveMin ? value > quantity.min : value >= quantity.min;
+  return inside && value <= quantity.max && (!quantity.integer || Number.isInteger(value));
+}
+
+/** A number as a person writes it: powers of ten where the zeros would not be counted. */
+function written(value: number): string {
+  const plain = value === 0 || (Math.abs(value) < 1e5 && Math.abs(value) >= 1e-3);
+  return plain ? String(value) : value.toExponential().replace("e+", "e");
+}
+
 /** The permitted range in words, as error messages and fields show it. */
 export function permitted(quantity: Quantity): string {
   const kind = quantity.integer ? "whole number " : "";
+  const zero = quantity.orZero ? "0, or " : "";
   const unit = quantity.unit === "1" ? "" : ` ${quantity.unit}`;
-  const range = quantity.aboveMin
-    ? `above ${quantity.min} up to ${quantity.max}${unit}`
-    : `${quantity.min} to ${quantity.max}${unit}`;
-  return `${kind}${range}${quantity.nullMeans ? `, or null (${quantity.nullMeans})` : ""}`;
+  const [min, max] = [written(quantity.min), written(quantity.max)];
+  const range = quantity.aboveMin ? `above ${min} up to ${max}${unit}` : `${min} to ${max}${unit}`;
+  return `${zero}${kind}${range}${quantity.nullMeans ? `, or null (${quantity.nullMeans})` : ""}`;
 }

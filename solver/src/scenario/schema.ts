@@ -3,29 +3,28 @@
  * It checks shapes and ranges; conditions between fields and defaults are in `resolve.ts`.
  */
 import * as z from "zod/mini";
-import { permitted, type Quantity, type QuantityName, quantities } from "./quantities.ts";
+import { isPermitted, type Quantity, type QuantityName, quantities } from "./quantities.ts";
 
 export const formatName = "demilune.scenario/1";
 
 export const limits = { layers: 100, spectra: 50, frequencies: 5000 } as const;
 
-/** A number within the range of its row in the table; null only where the row gives it a meaning. */
+/** Which row of the table a number of the schema belongs to. */
+export const quantityRegistry = z.registry<{ quantity: QuantityName }>();
+
+/** A number within the range of its row in the table. */
 function quantity(name: QuantityName) {
   const row: Quantity = quantities[name];
-  const inside = (value: number) =>
-    (row.aboveMin ? value > row.min : value >= row.min) &&
-    value <= row.max &&
-    (!row.integer || Number.isInteger(value));
-  return z
-    .number({ error: "is not a number" })
-    .check(
-      z.refine(inside, { error: (issue) => `is ${issue.input}`, params: { allowed: permitted(row) } }),
-      z.meta({ quantity: name, minimum: row.min, maximum: row.max }),
-    );
+  const schema = z.number().check(z.refine((value) => isPermitted(row, value)));
+  quantityRegistry.add(schema, { quantity: name });
+  return schema;
 }
 
 const number = (name: QuantityName) => z.optional(quantity(name));
+/** null where the row gives it a meaning ("none", "ideal", "infinite"). */
 const numberOrNull = (name: QuantityName) => z.optional(z.nullable(quantity(name)));
+/** null as the resolved document writes an absent part; the same as leaving it out. */
+const absent = <Schema extends z.core.$ZodType>(schema: Schema) => z.optional(z.nullable(schema));
 
 const contact = z.strictObject({
   workFunctionEV: z.optional(z.union([z.literal("ohmic"), quantity("workFunctionEV")])),
@@ -66,7 +65,7 @@ const layer = z.strictObject({
       anionMobilityCm2PerVs: number("anionMobilityCm2PerVs"),
     }),
   ),
-  traps: z.optional(z.strictObject({ densityPerCm3: quantity("densityPerCm3"), kind: z.enum(["acceptor", "donor"]) })),
+  traps: absent(z.strictObject({ densityPerCm3: quantity("densityPerCm3"), kind: z.enum(["acceptor", "donor"]) })),
 });
 
 /** An operating point: two names, or a terminal voltage. */
@@ -76,7 +75,7 @@ export const biasSchema = z.union([
 ]);
 
 const interfaceRow = z.strictObject({
-  afterLayer: z.int().check(z.minimum(0)),
+  afterLayer: quantity("afterLayer"),
   electronVelocityCmPerS: quantity("interfaceElectronVelocityCmPerS"),
   holeVelocityCmPerS: quantity("interfaceHoleVelocityCmPerS"),
 });
@@ -124,39 +123,21 @@ const overrides = {
   driftDiffusion: z.strictObject({}),
 };
 
-const absorber = z.optional(z.int().check(z.minimum(0)));
+function modelOf<Kind extends z.core.$ZodType, Overrides extends z.core.$ZodType>(kind: Kind, own: Overrides) {
+  return z.strictObject({
+    kind,
+    absorber: number("absorber"),
+    overrides: z.optional(own),
+    nodes: absent(quantity("nodes")),
+  });
+}
 
 const model = z.discriminatedUnion("kind", [
-  z.strictObject({
-    kind: z.literal("transit"),
-    absorber,
-    overrides: z.optional(overrides.transit),
-    nodes: number("nodes"),
-  }),
-  z.strictObject({
-    kind: z.literal("gaertner"),
-    absorber,
-    overrides: z.optional(overrides.gaertner),
-    nodes: number("nodes"),
-  }),
-  z.strictObject({
-    kind: z.literal("diffusion"),
-    absorber,
-    overrides: z.optional(overrides.diffusion),
-    nodes: number("nodes"),
-  }),
-  z.strictObject({
-    kind: z.literal("diffusionLayers"),
-    absorber,
-    overrides: z.optional(overrides.diffusionLayers),
-    nodes: number("nodes"),
-  }),
-  z.strictObject({
-    kind: z.literal("driftDiffusion"),
-    absorber,
-    overrides: z.optional(overrides.driftDiffusion),
-    nodes: number("nodes"),
-  }),
+  modelOf(z.literal("transit"), overrides.transit),
+  modelOf(z.literal("gaertner"), overrides.gaertner),
+  modelOf(z.literal("diffusion"), overrides.diffusion),
+  modelOf(z.literal("diffusionLayers"), overrides.diffusionLayers),
+  modelOf(z.optional(z.literal("driftDiffusion")), overrides.driftDiffusion),
 ]);
 
 export const modelKinds = ["transit", "gaertner", "diffusion", "diffusionLayers", "driftDiffusion"] as const;
@@ -178,14 +159,14 @@ export const scenarioSchema = z.strictObject({
     back: z.optional(contact),
     layers: z.array(layer).check(z.minLength(1), z.maxLength(limits.layers)),
     interfaces: z.optional(z.array(interfaceRow)),
-    ionsFrozenAt: z.optional(z.strictObject({ bias: z.optional(biasSchema), fluxPerCm2S: number("fluxPerCm2S") })),
+    ionsFrozenAt: absent(z.strictObject({ bias: z.optional(biasSchema), fluxPerCm2S: number("fluxPerCm2S") })),
   }),
   light: z.strictObject({
     side: z.optional(side),
     fluxPerCm2S: quantity("fluxPerCm2S"),
     modulationDepth: number("modulationDepth"),
-    wavelengthNm: number("wavelengthNm"),
-    modulationWavelengthNm: number("modulationWavelengthNm"),
+    wavelengthNm: absent(quantity("wavelengthNm")),
+    modulationWavelengthNm: absent(quantity("modulationWavelengthNm")),
     frontReflectance: number("frontReflectance"),
     backMirrorReflectance: number("backMirrorReflectance"),
   }),

@@ -1,0 +1,62 @@
+/** From a scenario to its result document. */
+import type { ResultDocument, SpectrumResult, Warning } from "./result.ts";
+import { resultFormatName } from "./result.ts";
+import { type Device, deviceOf } from "./scenario/device.ts";
+import { refuse } from "./scenario/errors.ts";
+import { hashOf } from "./scenario/hash.ts";
+import { parseScenario } from "./scenario/resolve.ts";
+import type { ResolvedScenario } from "./scenario/resolved.ts";
+import type { ModelKind } from "./scenario/schema.ts";
+import { solverVersion } from "./version.ts";
+
+export interface SolveOptions {
+  /** Looked at between steps; a spectrum stopped on request has the status "aborted". */
+  signal?: { readonly aborted: boolean };
+  /** Called with the fraction done, 0 to 1. */
+  onProgress?: (fraction: number) => void;
+}
+
+export interface SolvedSpectra {
+  spectra: SpectrumResult[];
+  warnings: Warning[];
+}
+
+/** One model: all spectra of a scenario in their order; throws ScenarioError for what the model refuses. */
+type ModelSolver = (scenario: ResolvedScenario, device: Device, options: SolveOptions) => SolvedSpectra;
+
+/** Where a model is plugged in. */
+const models: Partial<Record<ModelKind, ModelSolver>> = {};
+
+/**
+ * The spectra of a scenario that has been parsed, without hash: for sweeps and fits, which solve many.
+ *
+ * @throws ScenarioError where the model refuses what is asked.
+ */
+export function solveSpectra(scenario: ResolvedScenario, options: SolveOptions = {}): SolvedSpectra {
+  const solver = models[scenario.model.kind];
+  if (!solver)
+    refuse(
+      "model.kind",
+      `is "${scenario.model.kind}", which this solver does not have`,
+      Object.keys(models).join(", "),
+    );
+  return solver(scenario, deviceOf(scenario), options);
+}
+
+/**
+ * Solve a scenario: a document of any origin, or one that `parseScenario` returned.
+ *
+ * @throws ScenarioError with every fault of the document, or where the model refuses what is asked.
+ */
+export function solve(document: unknown, options: SolveOptions = {}): ResultDocument {
+  const scenario = parseScenario(document);
+  const { spectra, warnings } = solveSpectra(scenario, options);
+  return {
+    format: resultFormatName,
+    solver: solverVersion,
+    hash: hashOf(scenario),
+    status: spectra.every(({ status }) => status === "solved") ? "solved" : "notSolved",
+    warnings,
+    spectra,
+  };
+}
