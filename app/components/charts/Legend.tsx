@@ -1,0 +1,44 @@
+import { SvgText } from "./SvgText";
+import { colourOf, crossesPath, marksPath, type Series } from "./series";
+
+export const legendRow = 21;
+
+/** Height that a legend takes inside its plot. */
+export const legendHeight = (series: readonly Series[]): number => (series.length ? series.length * legendRow + 16 : 0);
+
+function Sample({ series }: { series: Series }) {
+  if (series.kind === "measured") {
+    return (
+      <>
+        <path
+          d={marksPath([{ x: 13, y: 0, index: 0 }], series.mark ?? "circle")}
+          fill="var(--sheet)"
+          stroke={colourOf(series)}
+        />
+        {series.masked && Array.from(series.masked).some(Boolean) && (
+          <path d={crossesPath([{ x: 24, y: 0, index: 0 }])} stroke="var(--rule)" fill="none" />
+        )}
+      </>
+    );
+  }
+  const held = series.kind === "held";
+  return (
+    <path
+      d="M0,0h26"
+      fill="none"
+      stroke={colourOf(series)}
+      strokeWidth={series.width ?? (held ? 1.3 : 2.2)}
+      strokeDasharray={series.dash ?? (held ? "5 3" : undefined)}
+    />
+  );
+}
+
+/** The legend, inside the plot, at its upper left or right. */
+export function Legend({ series, x, y }: { series: readonly Series[]; x: number; y: number }) {
+  return series.map((one, row) => (
+    <g key={one.id} transform={`translate(${x},${y + row * legendRow})`}>
+      <Sample series={one} />
+      <SvgText className="fill-ink" x={34} y={4.5} text={one.label} />
+    </g>
+  ));
+}

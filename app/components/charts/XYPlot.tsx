@@ -1,0 +1,55 @@
+import type { Column } from "./columns";
+import { type AxisDescription, PlotFrame, type PlotFrameProps } from "./PlotFrame";
+import type { Series } from "./series";
+import { boundsOf, padded, type Range, type ScaleKind, type View } from "./view";
+
+interface XYPlotProps
+  extends Pick<
+    PlotFrameProps,
+    | "title"
+    | "titleShown"
+    | "series"
+    | "height"
+    | "initialWidth"
+    | "legend"
+    | "xLabelsHidden"
+    | "cursor"
+    | "onCursor"
+    | "dragging"
+    | "below"
+    | "above"
+  > {
+  xAxis: AxisDescription;
+  yAxis: AxisDescription;
+  /** Fixed ends of an axis; what is left out follows the points. */
+  xRange?: Range;
+  yRange?: Range;
+  /** Columns of the table where they are more than x and y. */
+  columns?: readonly Column[];
+}
+
+const unitRange = (scale: ScaleKind): Range => (scale === "log" ? [0.1, 10] : [0, 1]);
+
+/** Curves over one quantity: J–V curves, profiles over depth, band edges, residuals; linear or logarithmic axes. */
+export function XYPlot({ xRange, yRange, columns, ...plot }: XYPlotProps) {
+  const { series, xAxis, yAxis } = plot;
+  const bounds = boundsOf(series, xAxis.scale, yAxis.scale);
+  const legendRoom = plot.legend === "none" || series.length === 0 ? 0.06 : 0.12 + 0.06 * series.length;
+  const view: View = {
+    x: xRange ?? bounds?.x ?? unitRange(xAxis.scale),
+    y: yRange ?? (bounds ? padded(bounds.y, yAxis.scale, 0.06, legendRoom) : unitRange(yAxis.scale)),
+  };
+  return (
+    <PlotFrame
+      {...plot}
+      monotone
+      whole={() => view}
+      columns={
+        columns ?? [
+          { label: xAxis.label, unit: xAxis.unit, value: (one: Series, index) => one.x[index] },
+          { label: yAxis.label, unit: yAxis.unit, value: (one: Series, index) => one.y[index] },
+        ]
+      }
+    />
+  );
+}
