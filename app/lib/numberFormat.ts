@@ -108,10 +108,9 @@ export function axisExponent(from: number, to: number): number {
   return Math.floor(Math.log10(largest) / 3) * 3;
 }
 
-/** Ticks of a linear axis, all with the decimals that their spacing needs. */
+/** Ticks of a linear axis, all with the decimals that the finest of them needs. */
 export function formatTicks(ticks: readonly number[], exponent: number): string[] {
-  const scaled = ticks.map((tick) => tick / 10 ** exponent);
-  const spacing = scaled.length > 1 ? Math.abs(scaled[1] - scaled[0]) : 1;
-  const decimals = Math.min(12, Math.max(0, -Math.floor(Math.log10(spacing) + 1e-9)));
+  const scaled = ticks.map((tick) => Number((tick / 10 ** exponent).toPrecision(10)));
+  const decimals = Math.max(0, ...scaled.map((tick) => (String(tick).split(".")[1] ?? "").length));
   return scaled.map((tick) => formatFixed(tick, decimals));
 }

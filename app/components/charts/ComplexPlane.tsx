@@ -80,6 +80,9 @@ export function ComplexPlane({ spectra, symbol, unit, imUp, decades, ...plot }: 
               <circle cx={x} cy={y} r={3} fill="var(--series-1)" />
               <SvgText
                 className="fill-ink-soft"
+                paintOrder="stroke"
+                stroke="var(--sheet)"
+                strokeWidth={3}
                 x={left}
                 y={top + 4}
                 textAnchor="middle"

@@ -33,12 +33,16 @@ function Sample({ series }: { series: Series }) {
   );
 }
 
-/** The legend, inside the plot, at its upper left or right. */
+const order = { prediction: 0, measured: 1, held: 2 } as const;
+
+/** The legend, inside the plot, at its upper left or right: predictions, then measurements, then what is held. */
 export function Legend({ series, x, y }: { series: readonly Series[]; x: number; y: number }) {
-  return series.map((one, row) => (
-    <g key={one.id} transform={`translate(${x},${y + row * legendRow})`}>
-      <Sample series={one} />
-      <SvgText className="fill-ink" x={34} y={4.5} text={one.label} />
-    </g>
-  ));
+  return series
+    .toSorted((one, other) => order[one.kind] - order[other.kind])
+    .map((one, row) => (
+      <g key={one.id} transform={`translate(${x},${y + row * legendRow})`}>
+        <Sample series={one} />
+        <SvgText className="fill-ink" x={34} y={4.5} text={one.label} />
+      </g>
+    ));
 }

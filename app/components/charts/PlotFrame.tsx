@@ -7,11 +7,11 @@ import { type Column, labelled, pointInWords, summaryOf } from "./columns";
 import { DataTable } from "./DataTable";
 import { type Geometry, geometryOf } from "./geometry";
 import { Legend } from "./Legend";
+import { plotKeyHandler } from "./plotKeys";
 import { SvgText } from "./SvgText";
 import { type Cursor, nearestIndex, placesOf, type Series } from "./series";
 import { Toolbar } from "./Toolbar";
 import { ticksOf } from "./ticks";
-import { plotKeyHandler } from "./plotKeys";
 import { usePlotPointer } from "./usePlotPointer";
 import { useWidth } from "./useSize";
 import {
@@ -88,7 +88,7 @@ export function PlotFrame(props: PlotFrameProps) {
   const view = props.equalScales ? withEqualScales(chosen, frame) : chosen;
   const geometry = geometryOf(view, frame, xAxis.scale, yAxis.scale);
   const xTicks = ticksOf(view.x, xAxis.scale, frame.width, xAxis.scale === "log" ? 40 : 64, xAxis.step);
-  const yTicks = ticksOf(view.y, yAxis.scale, frame.height, 38, yAxis.step);
+  const yTicks = ticksOf(view.y, yAxis.scale, frame.height, Math.min(38, frame.height / 4), yAxis.step);
 
   const read = series.find((one) => one.id === cursor?.seriesId);
   const readIndex = read && cursor ? nearestIndex(placesOf(read), cursor.at) : -1;

@@ -27,7 +27,8 @@ function logTicks([low, high]: Range, count: number): Ticks {
   const labels: string[] = [];
   const decades = Math.log10(high / low);
   const every = Math.max(1, Math.ceil(decades / Math.max(1, count)));
-  const named = decades < 1 ? [1, 2, 3, 5, 7] : decades < 2 ? [1, 2, 5] : [1];
+  const powers = Math.floor(Math.log10(high) + 1e-9) - Math.ceil(Math.log10(low) - 1e-9) + 1;
+  const named = powers > 1 ? [1] : [1, 2, 5];
   const minor = decades <= 6 ? [1, 2, 3, 4, 5, 6, 7, 8, 9] : [1];
   for (let power = Math.floor(Math.log10(low)); power <= Math.ceil(Math.log10(high)); power++)
     for (const digit of minor) {

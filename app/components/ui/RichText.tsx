@@ -5,9 +5,9 @@ function Run({ run }: { run: TextRun }) {
     case "italic":
       return <i>{run.text}</i>;
     case "superscript":
-      return <sup className="text-[0.74em] leading-none">{run.text}</sup>;
+      return <sup>{run.text}</sup>;
     case "subscript":
-      return <sub className="text-[0.74em] leading-none">{run.text}</sub>;
+      return <sub>{run.text}</sub>;
     default:
       return run.text;
   }
