@@ -21,6 +21,8 @@ export interface RandomSystemOptions {
   relaxations?: number;
   /** Zero diagonals in the first unknown of each node, so that rows must be exchanged. */
   zeroDiagonal?: boolean;
+  /** Couplings and storage only in the first column and on the diagonal, as in transport: all see the potential, each sees itself. */
+  arrow?: boolean;
   /** Nodes outside this range have a decoupled last unknown (diagonal block only). */
   lastUnknownBetween?: [number, number];
 }
@@ -39,6 +41,7 @@ export function randomSystem(options: RandomSystemOptions): HarmonicSystem {
         const at = (i * m + a) * m + c;
         if (i === 0 || !active(i, a) || !active(i - 1, c)) lower[at] = 0;
         if (i === nodes - 1 || !active(i, a) || !active(i + 1, c)) upper[at] = 0;
+        if (options.arrow && c > 0 && c !== a) lower[at] = upper[at] = storage[at] = 0;
         if (!active(i, a) || !active(i, c)) {
           diagonal[at] = 0;
           storage[at] = 0;

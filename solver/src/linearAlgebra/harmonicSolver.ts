@@ -1,5 +1,6 @@
 /** The way in to harmonic systems: the fastest safe solver for the system and the machine. */
 import { pivotedHarmonicSolver } from "./harmonicElimination.ts";
+import { kernelHarmonicSolver } from "./harmonicKernel.ts";
 import type { HarmonicSolver, HarmonicSystem } from "./harmonicSystem.ts";
 
 /**
@@ -7,5 +8,5 @@ import type { HarmonicSolver, HarmonicSystem } from "./harmonicSystem.ts";
  * @throws RangeError when an array of the system has the wrong length
  */
 export function harmonicSolver(system: HarmonicSystem): HarmonicSolver {
-  return pivotedHarmonicSolver(system);
+  return kernelHarmonicSolver(system) ?? pivotedHarmonicSolver(system);
 }
