@@ -1,0 +1,79 @@
+import { useId } from "react";
+import { describedBy, FieldFrame } from "./QuantityField";
+
+export interface Choice<Value extends string> {
+  value: Value;
+  label: string;
+}
+
+interface ChoiceFieldProps<Value extends string> {
+  name: string;
+  label: string;
+  choices: readonly Choice<Value>[];
+  defaultValue?: Value;
+  help?: string;
+  errors?: readonly string[];
+}
+
+/** One of several words in a form; label above. */
+export function ChoiceField<Value extends string>({
+  name,
+  label,
+  choices,
+  defaultValue,
+  help,
+  errors = [],
+}: ChoiceFieldProps<Value>) {
+  return (
+    <FieldFrame id={name} label={label} help={help} errors={errors}>
+      <select
+        id={name}
+        name={name}
+        defaultValue={defaultValue}
+        aria-invalid={errors.length > 0}
+        aria-describedby={describedBy(name, help !== undefined, errors.length > 0)}
+        className="h-9 w-full rounded-md border border-rule bg-sheet px-3 aria-invalid:border-bad"
+      >
+        {choices.map((choice) => (
+          <option key={choice.value} value={choice.value}>
+            {choice.label}
+          </option>
+        ))}
+      </select>
+    </FieldFrame>
+  );
+}
+
+interface ChoiceLineProps<Value extends string> {
+  label: string;
+  /** What the choice belongs to, for its spoken name. */
+  context?: string;
+  choices: readonly Choice<Value>[];
+  value: Value;
+  onChange: (value: Value) => void;
+}
+
+/** One of several words on the 24 px line of a number list. */
+export function ChoiceLine<Value extends string>({ label, context, choices, value, onChange }: ChoiceLineProps<Value>) {
+  const id = useId();
+  return (
+    <div className="flex h-6 items-center justify-between gap-2 border-b border-line">
+      <label htmlFor={id} className="truncate text-ink-soft">
+        {label}
+      </label>
+      <select
+        id={id}
+        aria-label={context ? `${label}, ${context}` : undefined}
+        value={value}
+        onChange={(event) => onChange(event.currentTarget.value as Value)}
+        className="h-6 min-w-0 rounded-[2px] bg-transparent text-right"
+      >
+        {choices.map((choice) => (
+          <option key={choice.value} value={choice.value} className="bg-sheet">
+            {choice.label}
+          </option>
+        ))}
+      </select>
+    </div>
+  );
+}
