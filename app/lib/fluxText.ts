@@ -8,7 +8,8 @@
  * | current | J = q Φ | mA/cm² |
  */
 import { elementaryCharge, planckConstant, type Quantity, quantities, speedOfLight } from "@demilune/solver";
-import { permittedRange, type Reading, readQuantity, splitTyped, typeset, unitOf, valueIn } from "./quantityText";
+import { formatNumber } from "./numberFormat";
+import { permittedRange, type Reading, readQuantity, splitTyped, unitOf, valueIn } from "./quantityText";
 import { sameDimension } from "./units";
 
 export const fluxForms = ["photons", "power", "current"] as const;
@@ -70,10 +71,10 @@ export function readFlux(
   if (!(value >= flux.min && value <= flux.max)) {
     return {
       ok: false,
-      error: `this is ${typeset(Number(value.toPrecision(5)))} photons cm⁻² s⁻¹; permitted: ${permittedRange(flux)}`,
+      error: `this is ${formatNumber(value, 4)} photons cm⁻² s⁻¹; permitted: ${permittedRange(flux)}`,
     };
   }
-  const shown = used === "photons" ? null : `= ${typeset(Number(value.toPrecision(6)))} photons cm⁻² s⁻¹`;
+  const shown = used === "photons" ? null : `= ${formatNumber(value, 6)} photons cm⁻² s⁻¹`;
   const ambiguous = typed.decimal.ambiguous ? `read as ${typed.decimal.mantissa}` : null;
   return {
     ok: true,

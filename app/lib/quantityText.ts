@@ -6,6 +6,7 @@
  * thing as the field's own. A comma before exactly three digits is read as a decimal mark, and said so.
  */
 import type { Quantity } from "@demilune/solver";
+import { formatNumber, formatQuantity, formatUnit, thinSpace } from "./numberFormat";
 import { normaliseText, parseUnit, sameDimension, type Unit } from "./units";
 
 export type Reading =
@@ -27,7 +28,6 @@ interface Decimal {
 
 const examples = "write for example 5e17, 5·10^17 or 0,5";
 const nullWords = new Set(["none", "no", "off", "ideal", "infinite", "infinity", "∞", "null", "-"]);
-const superscriptDigits = "⁰¹²³⁴⁵⁶⁷⁸⁹";
 
 /** Plain text a number field starts from and accepts: "0.05", "6e17"; the shortest that reads back exactly. */
 export function typedForm(value: number): string {
@@ -36,26 +36,15 @@ export function typedForm(value: number): string {
   return value.toExponential().replace("e+", "e");
 }
 
-/** Mantissa and power of ten of a number as the trade prints it; no power between 0.001 and 100 000. */
-export function typesetParts(value: number): { mantissa: string; exponent: string | null } {
-  const [mantissa, exponent] = typedForm(value).replaceAll("-", "−").split("e");
-  return { mantissa, exponent: exponent ?? null };
-}
-
-/** A number as plain text with true minus and raised exponent: "6×10¹⁷", "−0.2". */
-export function typeset(value: number): string {
-  const { mantissa, exponent } = typesetParts(value);
-  if (exponent === null) return mantissa;
-  const raised = [...exponent].map((sign) => (sign === "−" ? "⁻" : superscriptDigits[Number(sign)])).join("");
-  return mantissa === "1" ? `10${raised}` : `${mantissa}×10${raised}`;
-}
+/** A limit in print form; a bare power of ten reads better without its mantissa. */
+const limitText = (value: number): string => formatNumber(value).replace(/^1×/, "");
 
 /** The permitted range in words and in print form: "0.1 to 10⁷ nm". */
 export function permittedRange(quantity: Quantity): string {
-  const unit = quantity.unit === "1" ? "" : ` ${quantity.unit}`;
-  const lower = `${quantity.integer ? "whole number " : ""}${quantity.aboveMin ? "above " : ""}${typeset(quantity.min)}`;
+  const unit = quantity.unit === "1" ? "" : `${thinSpace}${formatUnit(quantity.unit)}`;
+  const lower = `${quantity.integer ? "whole number " : ""}${quantity.aboveMin ? "above " : ""}${limitText(quantity.min)}`;
   const nothing = quantity.nullMeans ? `, or empty (${quantity.nullMeans})` : "";
-  return `${lower} ${quantity.aboveMin ? "up to" : "to"} ${typeset(quantity.max)}${unit}${nothing}`;
+  return `${lower} ${quantity.aboveMin ? "up to" : "to"} ${limitText(quantity.max)}${unit}${nothing}`;
 }
 
 function splitNumber(text: string): { decimal: Decimal; rest: string } | { error: string } {
@@ -148,9 +137,8 @@ export function unitOf(unitText: string): Unit {
 }
 
 function outside(value: number, quantity: Quantity): string | null {
-  const unit = quantity.unit === "1" ? "" : ` ${quantity.unit}`;
   const low = quantity.aboveMin ? value <= quantity.min : value < quantity.min;
-  const said = Number.isFinite(value) ? `${typeset(value)}${unit} is` : "this number is";
+  const said = Number.isFinite(value) ? `${formatQuantity(value, quantity.unit)} is` : "this number is";
   if (low) return `${said} too small; permitted: ${permittedRange(quantity)}`;
   if (value > quantity.max) return `${said} too large; permitted: ${permittedRange(quantity)}`;
   if (quantity.integer && !Number.isInteger(value))
@@ -173,7 +161,7 @@ export function readQuantity(text: string, quantity: Quantity, emptyMeans?: stri
       return {
         ok: true,
         value: undefined,
-        note: `left empty: ${typeset(quantity.default)}${quantity.unit === "1" ? "" : ` ${quantity.unit}`}`,
+        note: `left empty: ${formatQuantity(quantity.default, quantity.unit)}`,
       };
     }
     return { ok: false, error: `a value is needed; permitted: ${permittedRange(quantity)}` };
@@ -201,16 +189,15 @@ export function readQuantity(text: string, quantity: Quantity, emptyMeans?: stri
   }
   const problem = outside(value, quantity);
   if (problem) return { ok: false, error: problem };
-  const unitLabel = quantity.unit === "1" ? "" : ` ${quantity.unit}`;
   const converted = celsius || (typed.unit && typed.unit.power !== own.power);
   if (typed.decimal.ambiguous) {
     return {
       ok: true,
       value,
-      note: `read as ${typed.decimal.mantissa}${converted ? `, = ${typeset(value)}${unitLabel}` : ""}; a comma is a decimal mark`,
+      note: `read as ${typed.decimal.mantissa}${converted ? `, = ${formatQuantity(value, quantity.unit)}` : ""}; a comma is a decimal mark`,
     };
   }
-  return { ok: true, value, note: converted ? `= ${typeset(value)}${unitLabel}` : null };
+  return { ok: true, value, note: converted ? `= ${formatQuantity(value, quantity.unit)}` : null };
 }
 
 /** One step of the arrow keys: a factor 10^0.1 (fine: 10^0.01), or a decimal step for linear quantities; kept in range. */

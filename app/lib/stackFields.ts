@@ -59,10 +59,10 @@ export const layerFields: readonly LayerField[] = [
   layer("gapEV", "gap *E*_{g}"),
   optional(layer("absorptionPerCm", "absorption *α*")),
   {
-    ...optional(layer("modulationAbsorptionPerCm", "*α* of modulation")),
+    ...optional(layer("modulationAbsorptionPerCm", "*α* modulated")),
     emptyMeans: "as the absorption coefficient",
   },
-  optional(layer("carrierYield", "carrier yield *η*")),
+  optional(layer("carrierYield", "yield *η*")),
   carriers("electronMobilityCm2PerVs", "*µ*_{n}"),
   carriers("holeMobilityCm2PerVs", "*µ*_{p}"),
   carriers("conductionStatesPerCm3", "*N*_{c}"),
@@ -71,7 +71,7 @@ export const layerFields: readonly LayerField[] = [
   optional(carriers("acceptorsPerCm3", "acceptors *N*_{A}")),
   recombination("electronLifetimeNs", "*τ*_{n}"),
   recombination("holeLifetimeNs", "*τ*_{p}"),
-  { ...recombination("trapDepthEV", "depth below *E*_{c}"), emptyMeans: "half the gap" },
+  { ...recombination("trapDepthEV", "trap depth"), emptyMeans: "half the gap" },
   recombination("radiativeCm3PerS", "radiative *B*"),
   recombination("augerElectronCm6PerS", "Auger *C*_{n}"),
   recombination("augerHoleCm6PerS", "Auger *C*_{p}"),
@@ -79,13 +79,13 @@ export const layerFields: readonly LayerField[] = [
     group: "Recombination and traps",
     path: ["traps", "densityPerCm3"],
     quantity: "densityPerCm3",
-    label: "dynamic traps *N*_{t}",
-    emptyMeans: "no dynamic traps",
+    label: "traps *N*_{t}",
+    emptyMeans: "none",
   },
   ions("cationsPerCm3", "cations"),
-  ions("cationMobilityCm2PerVs", "cation mobility"),
+  ions("cationMobilityCm2PerVs", "*µ* of cations"),
   ions("anionsPerCm3", "anions"),
-  ions("anionMobilityCm2PerVs", "anion mobility"),
+  ions("anionMobilityCm2PerVs", "*µ* of anions"),
 ];
 
 export const contactFields: readonly NumberField[] = [
@@ -98,13 +98,13 @@ export const interfaceFields: readonly NumberField[] = [
     path: ["electronVelocityCmPerS"],
     quantity: "interfaceElectronVelocityCmPerS",
     label: "*S*_{n}",
-    emptyMeans: "no recombination at this interface",
+    emptyMeans: "none",
   },
   {
     path: ["holeVelocityCmPerS"],
     quantity: "interfaceHoleVelocityCmPerS",
     label: "*S*_{p}",
-    emptyMeans: "no recombination at this interface",
+    emptyMeans: "none",
   },
 ];
 

@@ -32,7 +32,7 @@ export function ChoiceField<Value extends string>({
         defaultValue={defaultValue}
         aria-invalid={errors.length > 0}
         aria-describedby={describedBy(name, help !== undefined, errors.length > 0)}
-        className="h-9 w-full rounded-md border border-rule bg-sheet px-3 aria-invalid:border-bad"
+        className="h-9 w-full rounded border border-rule bg-sheet px-3 aria-invalid:border-bad"
       >
         {choices.map((choice) => (
           <option key={choice.value} value={choice.value}>

@@ -8,9 +8,9 @@ import { useSidewaysDrag } from "./useSidewaysDrag";
 import type { ChangeStep } from "./useTypedQuantity";
 
 const formWords: Record<FluxForm, string> = {
-  photons: "photons cm⁻² s⁻¹",
+  photons: "photons per cm² and s",
   power: "mW/cm²",
-  current: "mA/cm² at most",
+  current: "mA/cm² it could at most drive",
 };
 
 export interface FluxFieldProps {
@@ -44,7 +44,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
   function change(next: number, live: boolean) {
     setText(null);
     setChecked(false);
-    if (next !== fluxPerCm2S) onChange(next, { live });
+    if (next !== fluxPerCm2S || !live) onChange(next, { live });
   }
   function commit() {
     setChecked(true);
@@ -60,7 +60,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
     if (event.key === "ArrowUp" || event.key === "ArrowDown") {
       event.preventDefault();
       const direction = event.key === "ArrowUp" ? 1 : -1;
-      change(stepped(fluxPerCm2S, quantities.fluxPerCm2S, direction, event.shiftKey), event.repeat);
+      change(stepped(fluxPerCm2S, quantities.fluxPerCm2S, direction, event.shiftKey), false);
     } else if (event.key === "Enter" && text !== null) {
       event.preventDefault();
       commit();
@@ -73,7 +73,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
 
   return (
     <div>
-      <div className="grid h-6 grid-cols-[minmax(0,1fr)_4.75rem_auto] border-b border-line leading-[22px]">
+      <div className="grid h-6 grid-cols-[minmax(0,max-content)_minmax(4.5rem,1fr)_84px] border-b border-line leading-[22px]">
         <label htmlFor={id} className="cursor-ew-resize truncate text-lamp select-none touch-pan-y" {...drag}>
           <RichText text={label} />
         </label>
@@ -113,13 +113,14 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
         </div>
         <select
           aria-label="unit of the photon flux"
+          title={formWords[chosen]}
           value={chosen}
           onChange={(event) => setForm(event.currentTarget.value as FluxForm)}
-          className="h-6 max-w-36 rounded-[2px] bg-transparent pl-1 text-[13px] text-ink-soft"
+          className="h-6 w-full rounded-[2px] bg-transparent pl-1 text-small text-ink-soft"
         >
           {fluxForms.map((one) => (
             <option key={one} value={one} className="bg-sheet text-ink">
-              {formWords[one]}
+              {fluxUnits[one]}
             </option>
           ))}
         </select>
@@ -128,7 +129,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
         <p
           id={`${id}-message`}
           role={error ? "alert" : "status"}
-          className={`py-0.5 text-[13px] leading-[18px] ${error ? "text-bad" : "text-ink-soft"}`}
+          className={`py-0.5 text-small ${error ? "text-bad" : "text-ink-soft"}`}
         >
           {error && <span aria-hidden="true">▲ </span>}
           <RichText text={message} />

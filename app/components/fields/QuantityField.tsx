@@ -21,12 +21,12 @@ export function FieldFrame({ id, label, help, errors = [], children }: FieldFram
       </label>
       {children}
       {help && (
-        <p id={`${id}-help`} className="text-[13px] leading-[18px] text-ink-soft">
+        <p id={`${id}-help`} className="text-small text-ink-soft">
           <RichText text={help} />
         </p>
       )}
       {errors.length > 0 && (
-        <p id={`${id}-error`} className="text-[13px] leading-[18px] text-bad">
+        <p id={`${id}-error`} className="text-small text-bad">
           <span aria-hidden="true">▲ </span>
           {errors.join("; ")}
         </p>
@@ -93,11 +93,11 @@ export function QuantityField({
           defaultValue={defaultText}
           onChange={(event) => setText(event.currentTarget.value)}
           onBlur={() => setLeft(true)}
-          className="h-9 w-full rounded-md border border-rule bg-sheet py-1 pr-20 pl-3 tabular-nums aria-invalid:border-bad"
+          className="h-9 w-full rounded border border-rule bg-sheet py-1 pr-20 pl-3 tabular-nums aria-invalid:border-bad"
         />
         <span
           aria-hidden="true"
-          className="pointer-events-none absolute inset-y-0 right-3 flex items-center text-[13px] text-ink-soft"
+          className="pointer-events-none absolute inset-y-0 right-3 flex items-center text-small text-ink-soft"
         >
           <span>
             <RichText text={unit} />

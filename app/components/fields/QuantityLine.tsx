@@ -8,7 +8,7 @@ import { useSidewaysDrag } from "./useSidewaysDrag";
 import { type ChangeStep, type FieldValue, useTypedQuantity } from "./useTypedQuantity";
 
 /** Longest printed mantissa on a line; longer numbers are shown rounded and edited whole. */
-const printedDigits = 5;
+const printedDigits = 4;
 
 /** A number as a line shows it: whole where it is short, else rounded. */
 function printed(value: number): string {
@@ -57,7 +57,7 @@ export function QuantityLine(props: QuantityLineProps) {
 
   return (
     <div className="group/line">
-      <div className="grid h-6 grid-cols-[minmax(0,1fr)_auto_58px] border-b border-line leading-[22px]">
+      <div className="grid h-6 grid-cols-[minmax(0,max-content)_minmax(3.75rem,1fr)_52px] border-b border-line leading-[22px]">
         <label
           htmlFor={id}
           className="truncate text-ink-soft select-none touch-pan-y data-[drag]:cursor-ew-resize"
@@ -67,11 +67,11 @@ export function QuantityLine(props: QuantityLineProps) {
         >
           <RichText text={label} />
         </label>
-        <div className="relative w-[4.75rem]">
+        <div className="relative">
           {!readOnly && (
-            <span className="absolute right-28 z-10 hidden bg-paper group-focus-within/line:flex">
-              <StepButton word="Lower" spoken={spoken} onPress={() => typed.step(-1, false, false)} sign="−" />
-              <StepButton word="Raise" spoken={spoken} onPress={() => typed.step(1, false, false)} sign="+" />
+            <span className="absolute right-24 z-10 hidden bg-paper group-focus-within/line:group-hover/line:flex">
+              <StepButton word="Lower" spoken={spoken} onPress={() => typed.step(-1, false)} sign="−" />
+              <StepButton word="Raise" spoken={spoken} onPress={() => typed.step(1, false)} sign="+" />
             </span>
           )}
           <input
@@ -95,7 +95,7 @@ export function QuantityLine(props: QuantityLineProps) {
             onBlur={typed.commit}
             onKeyDown={readOnly ? undefined : typed.onKeyDown}
             onFocus={(event) => event.currentTarget.select()}
-            className={`peer absolute right-0 h-6 w-full rounded-[2px] bg-transparent px-1 text-right tabular-nums focus:z-20 focus:w-28 focus:bg-sheet focus:text-ink focus:outline-2 focus:outline-tide ${
+            className={`peer absolute right-0 h-6 w-full rounded-[2px] bg-transparent px-1 text-right tabular-nums focus:z-20 focus:w-24 focus:bg-sheet focus:text-ink focus:outline-2 focus:outline-tide ${
               typed.pending ? "text-ink" : "text-transparent touch-pan-y"
             } ${error ? "outline-2 outline-bad" : ""} ${readOnly ? "" : "not-focus:cursor-ew-resize"}`}
             {...drag}
@@ -110,15 +110,15 @@ export function QuantityLine(props: QuantityLineProps) {
           {!typed.pending && (
             <span
               aria-hidden="true"
-              className={`pointer-events-none absolute inset-y-0 right-0 truncate px-1 text-right peer-focus:hidden ${
+              className={`pointer-events-none absolute inset-y-0 right-0 px-1 whitespace-nowrap text-right peer-focus:hidden ${
                 value === undefined || value === null ? "text-ink-soft" : ""
-              } ${typeof number === "number" ? "tabular-nums" : "max-w-36 text-[13px]"}`}
+              } ${typeof number === "number" ? "tabular-nums" : "max-w-36 text-small leading-[22px]"}`}
             >
               <RichText text={words} />
             </span>
           )}
         </div>
-        <span className="truncate pl-1.5 text-[13px] text-ink-soft">
+        <span className="truncate pl-1.5 text-small leading-[22px] text-ink-soft">
           <RichText text={unit} />
         </span>
       </div>
@@ -126,19 +126,19 @@ export function QuantityLine(props: QuantityLineProps) {
         <p
           id={`${id}-message`}
           role={error ? "alert" : "status"}
-          className={`py-0.5 text-[13px] leading-[18px] ${error ? "text-bad" : "text-ink-soft"}`}
+          className={`py-0.5 text-small ${error ? "text-bad" : "text-ink-soft"}`}
         >
           {error && <span aria-hidden="true">▲ </span>}
           <RichText text={message} />
         </p>
       )}
       {held !== undefined && (
-        <div className="grid h-6 grid-cols-[minmax(0,1fr)_auto_58px] border-b border-line leading-[22px] text-ink-soft">
+        <div className="grid h-6 grid-cols-[minmax(0,max-content)_minmax(3.75rem,1fr)_52px] border-b border-line leading-[22px] text-ink-soft">
           <span>held at</span>
-          <span className="px-1 tabular-nums">
+          <span className="px-1 text-right tabular-nums">
             <RichText text={printed(held)} />
           </span>
-          <span className="pl-1.5 text-[13px]">
+          <span className="pl-1.5 text-small leading-[22px]">
             <RichText text={unit} />
           </span>
         </div>

@@ -2,7 +2,7 @@ import type { Quantity } from "@demilune/solver";
 import { type KeyboardEvent, useState } from "react";
 import { moved, type Reading, readQuantity, stepped, typedForm } from "~/lib/quantityText";
 
-/** Whether a change is one of a running gesture (drag, held key) or stands by itself. */
+/** Whether a change is one of a running drag or stands by itself. */
 export interface ChangeStep {
   live: boolean;
 }
@@ -42,13 +42,14 @@ export function useTypedQuantity({ quantity, value, fallback, emptyMeans, onChan
   }
   function change(next: number, live: boolean) {
     restore();
-    if (next !== value) onChange(next, { live });
+    // The end of a gesture is told even where the value stands already: it settles what was live.
+    if (next !== value || !live) onChange(next, { live });
   }
   /** Where a step or a drag begins; null where there is no number to begin from. */
   const present = reading?.ok && typeof reading.value === "number" ? reading.value : (value ?? fallback ?? null);
 
-  function step(direction: 1 | -1, fine: boolean, live: boolean) {
-    if (present !== null) change(stepped(present, quantity, direction, fine), live);
+  function step(direction: 1 | -1, fine: boolean) {
+    if (present !== null) change(stepped(present, quantity, direction, fine), false);
   }
   function onKeyDown(event: KeyboardEvent) {
     if (event.altKey || event.ctrlKey || event.metaKey) return;
@@ -57,12 +58,12 @@ export function useTypedQuantity({ quantity, value, fallback, emptyMeans, onChan
       case "ArrowUp":
       case "ArrowDown":
         event.preventDefault();
-        step(direction, event.shiftKey, event.repeat);
+        step(direction, event.shiftKey);
         break;
       case "PageUp":
       case "PageDown":
         event.preventDefault();
-        if (present !== null) change(moved(present, quantity, direction), event.repeat);
+        if (present !== null) change(moved(present, quantity, direction), false);
         break;
       case "Enter":
         if (text !== null) event.preventDefault();

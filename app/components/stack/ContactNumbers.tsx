@@ -65,7 +65,7 @@ export function ContactNumbers({ document, side, onChange, readOnly }: ContactNu
       {workFunction !== "ohmic" && (
         <QuantityLine
           quantity={quantities.workFunctionEV}
-          label="work function *Φ*_{c}"
+          label="work function"
           context={`${side} contact`}
           value={workFunction}
           readOnly={readOnly}
