@@ -6,7 +6,17 @@ export default defineConfig({
   test: {
     projects: [
       { resolve: { alias }, test: { name: "solver", include: ["tests/solver/**/*.test.ts"], environment: "node" } },
-      { resolve: { alias }, test: { name: "app", include: ["tests/app/**/*.test.{ts,tsx}"], environment: "node" } },
+      {
+        resolve: { alias },
+        test: {
+          name: "app",
+          include: ["tests/app/**/*.test.{ts,tsx}"],
+          environment: "node",
+          testTimeout: 30_000,
+          hookTimeout: 60_000,
+          globalSetup: "tests/support/build.ts",
+        },
+      },
       {
         resolve: { alias },
         test: {

@@ -1,7 +1,14 @@
 import { index, layout, type RouteConfig, route } from "@react-router/dev/routes";
 
 export default [
-  layout("routes/public/layout.tsx", [index("routes/public/landing.tsx"), route("*", "routes/public/notFound.tsx")]),
+  layout("routes/public/layout.tsx", [
+    index("routes/public/landing.tsx"),
+    route("sign-in", "routes/account/signIn.tsx"),
+    route("sign-in/code", "routes/account/signInCode.tsx"),
+    route("account", "routes/account/account.tsx"),
+    route("mailbox", "routes/public/mailbox.tsx"),
+    route("*", "routes/public/notFound.tsx"),
+  ]),
   route("demo", "routes/public/demo.ts"),
   route("theme", "routes/public/theme.ts"),
   route("sign-out", "routes/account/signOut.ts"),

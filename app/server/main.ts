@@ -1,10 +1,12 @@
 /** Entry of the server build: one bundle holds server, loaders and database, so that they share one of each. */
 import { createServer, type Server } from "node:http";
+import { setTimeout as sleep } from "node:timers/promises";
 import type { RequestHandler } from "express";
 import type { ServerBuild } from "react-router";
 import { closeDatabase, prepareDatabase } from "~/models/database.server";
 import { announceStop } from "~/services/lifetime.server";
 import { log } from "~/services/log.server";
+import { finishMails } from "~/services/mail/mail.server";
 import { SettingsError, settings } from "~/services/settings.server";
 import { createEdge } from "./edge";
 
@@ -16,6 +18,9 @@ export interface Running {
 
 /** How long open answers may go on after they were told to end, in ms. */
 const grace = 300;
+
+/** How long mails under way are waited for at the end, in ms. */
+const mailGrace = 1000;
 
 /**
  * Prepares the database, seeds the demo if it is one, and listens.
@@ -51,6 +56,7 @@ export async function start(
       const timer = setTimeout(() => server.closeAllConnections(), grace);
       await closed;
       clearTimeout(timer);
+      await Promise.race([finishMails(), sleep(mailGrace, undefined, { ref: false })]);
       await closeDatabase();
       log.info({ event: "stopped" });
     },

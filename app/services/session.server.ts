@@ -2,6 +2,7 @@ import { createCookie, type RouterContextProvider, redirect } from "react-router
 import { createSession, endSession, findSession } from "~/models/sessions.server";
 import { actorContext, requestContext } from "./context.server";
 import { settings } from "./settings.server";
+import { codeLifetimeMs } from "./signIn.server";
 
 /**
  * A cookie of ours: HttpOnly, Lax, for the whole site and this host alone. Over https the `__Host-` prefix makes the
@@ -13,6 +14,9 @@ export function siteCookie(name: string, maxAge: number) {
 }
 
 const sessionCookie = () => siteCookie("sid", settings().sessionMs / 1000);
+
+/** Holds the id of the challenge whose code was sent; ten minutes, like the code. */
+export const challengeCookie = () => siteCookie("login", codeLifetimeMs / 1000);
 
 /** Root middleware: finds out who is asking, once per request. */
 export async function identifyActor({
