@@ -19,5 +19,6 @@ export {
   spectrumRequestSchema,
   techniques,
 } from "./scenario/schema.ts";
+export { warningsOf } from "./scenario/warnings.ts";
 export { type SolvedSpectra, type SolveOptions, solve, solveSpectra } from "./solve.ts";
 export * from "./version.ts";

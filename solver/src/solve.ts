@@ -1,4 +1,8 @@
 /** From a scenario to its result document. */
+import { solveDiffusion } from "./closedForm/diffusion.ts";
+import { solveGaertner } from "./closedForm/gaertner.ts";
+import { solveTransit } from "./closedForm/transit.ts";
+import { solveLayeredDiffusion } from "./layeredDiffusion/layeredDiffusion.ts";
 import type { ResultDocument, SpectrumResult, Warning } from "./result.ts";
 import { resultFormatName } from "./result.ts";
 import { type Device, deviceOf } from "./scenario/device.ts";
@@ -7,6 +11,7 @@ import { hashOf } from "./scenario/hash.ts";
 import { parseScenario } from "./scenario/resolve.ts";
 import type { ResolvedScenario } from "./scenario/resolved.ts";
 import type { ModelKind } from "./scenario/schema.ts";
+import { warningsOf } from "./scenario/warnings.ts";
 import { solverVersion } from "./version.ts";
 
 export interface SolveOptions {
@@ -25,7 +30,12 @@ export interface SolvedSpectra {
 type ModelSolver = (scenario: ResolvedScenario, device: Device, options: SolveOptions) => SolvedSpectra;
 
 /** Where a model is plugged in. */
-const models: Partial<Record<ModelKind, ModelSolver>> = {};
+const models: Partial<Record<ModelKind, ModelSolver>> = {
+  transit: solveTransit,
+  gaertner: solveGaertner,
+  diffusion: solveDiffusion,
+  diffusionLayers: solveLayeredDiffusion,
+};
 
 /**
  * The spectra of a scenario that has been parsed, without hash: for sweeps and fits, which solve many.
@@ -40,7 +50,9 @@ export function solveSpectra(scenario: ResolvedScenario, options: SolveOptions =
       `is "${scenario.model.kind}", which this solver does not have`,
       Object.keys(models).join(", "),
     );
-  return solver(scenario, deviceOf(scenario), options);
+  const device = deviceOf(scenario);
+  const { spectra, warnings } = solver(scenario, device, options);
+  return { spectra, warnings: [...warningsOf(scenario, device), ...warnings] };
 }
 
 /**

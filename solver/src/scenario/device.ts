@@ -91,6 +91,13 @@ const nanosecond = 1e-9;
 /** Photons cm⁻² s⁻¹ → photons m⁻² s⁻¹. */
 export const fluxToSI = (fluxPerCm2S: number): number => fluxPerCm2S * 1e4;
 
+/** A/m² → mA/cm². */
+export const currentFromSI = (current: number): number => current * 0.1;
+/** mA/cm² → A/m². */
+export const currentToSI = (currentMAPerCm2: number): number => currentMAPerCm2 * 10;
+/** Ω m² → Ω cm². */
+export const resistanceFromSI = (resistance: number): number => resistance * 1e4;
+
 function layerToSI(layer: ResolvedLayer): Layer {
   const { recombination, ions, traps } = layer;
   const lifetime = (ns: number | null) => (ns === null ? null : ns * nanosecond);
