@@ -1,4 +1,5 @@
 /** The public surface of the solver. */
+export { type Arc, type ArcAnalysis, arcsOf, type Curve } from "./analysis/arcs.ts";
 export * from "./constants.ts";
 export * from "./result.ts";
 export * from "./scenario/device.ts";
