@@ -6,7 +6,7 @@
 import { refuse } from "./errors.ts";
 import type { Quantity } from "./quantities.ts";
 import type { ResolvedScenario } from "./resolved.ts";
-import { type ScenarioDocument, scenarioSchema } from "./schema.ts";
+import { scenarioSchema } from "./schema.ts";
 import { bare, below, fieldsOf, type Key, objectFor, quantityOf, type Schema, schemaAt, step } from "./walk.ts";
 
 const keysOf = (path: string): Key[] => path.split(".").map((key) => (/^(0|[1-9]\d*)$/.test(key) ? Number(key) : key));
@@ -30,7 +30,7 @@ function entriesExist(document: unknown, keys: readonly Key[]): boolean {
  *
  * @throws ScenarioError where the document may not have a number there.
  */
-export function quantityAt(document: ScenarioDocument | ResolvedScenario, path: string): Quantity {
+export function quantityAt(document: unknown, path: string): Quantity {
   const keys = keysOf(path);
   const schema = schemaAt(scenarioSchema, document, keys);
   const row = schema && quantityOf(schema);
@@ -67,11 +67,7 @@ function withValue(container: unknown, keys: readonly Key[], value: number): unk
  *
  * @throws ScenarioError where the document may not have a number at a path.
  */
-export function withNumber<Document extends ScenarioDocument | ResolvedScenario>(
-  document: Document,
-  path: string,
-  value: number,
-): Document {
+export function withNumber<Document>(document: Document, path: string, value: number): Document {
   return tiedPaths(path).reduce((changed, one) => {
     quantityAt(changed, one);
     return withValue(changed, keysOf(one), value) as Document;
