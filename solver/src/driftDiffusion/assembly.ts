@@ -80,13 +80,7 @@ export interface TrapSink {
   add(piece: number, electrons: number, holes: number): void;
 }
 
-export function assemble(
-  problem: Problem,
-  state: State,
-  drive: Drive,
-  target: Assembly,
-  traps: TrapSink | null,
-): void {
+export function assemble(problem: Problem, state: State, drive: Drive, target: Assembly, traps: TrapSink | null): void {
   target.lower.fill(0);
   target.diagonal.fill(0);
   target.upper.fill(0);
@@ -102,8 +96,7 @@ export function assemble(
   addInterfaces(problem, state, target);
   addContact(problem, state, target, 0);
   addContact(problem, state, target, problem.nodes - 1);
-  if (drive.frozenIonCharge)
-    for (let i = 0; i < problem.nodes; i++) residual[i * m] += drive.frozenIonCharge[i];
+  if (drive.frozenIonCharge) for (let i = 0; i < problem.nodes; i++) residual[i * m] += drive.frozenIonCharge[i];
   else for (let g = 0; g < problem.ions.length; g++) addIonCharge(problem, problem.ions[g], state, g, target);
   fixPotential(problem, state, target, 0);
   fixPotential(problem, state, target, problem.nodes - 1);
@@ -233,8 +226,7 @@ function addPieces(problem: Problem, state: State, target: Assembly, traps: Trap
     const product = n * p;
     const excess = excessProduct(product, layers.intrinsicSquared[layer], electronEnergy[i] - holeEnergy[i]);
     const electronLifetime = layers.electronLifetime[layer];
-    let coefficient =
-      layers.radiative[layer] + layers.augerElectron[layer] * n + layers.augerHole[layer] * p;
+    let coefficient = layers.radiative[layer] + layers.augerElectron[layer] * n + layers.augerHole[layer] * p;
     let byElectrons = layers.augerElectron[layer] * n;
     let byHoles = layers.augerHole[layer] * p;
     if (electronLifetime < Infinity) {
@@ -334,8 +326,7 @@ function addIonCharge(problem: Problem, group: IonGroup, state: State, g: number
   const level = state.ionLevels[g];
   for (let i = firstNode; i <= lastNode; i++) {
     const behind = i > state.cut;
-    const ions =
-      width[i - firstNode] * boltzmann(level - charge * (state.potential[i] + (behind ? step : 0)));
+    const ions = width[i - firstNode] * boltzmann(level - charge * (state.potential[i] + (behind ? step : 0)));
     target.residual[i * m] += charge * ions;
     target.diagonal[i * m * m] += ions;
     if (behind) target.byVoltage[i * m] -= problem.sign * ions;

@@ -16,7 +16,14 @@
 import type { Drive } from "./assembly.ts";
 import { neutralState, solveEquilibrium } from "./equilibrium.ts";
 import { ionCharge } from "./ions.ts";
-import { circuitEquation, createWorkspace, type NewtonOutcome, newton, type Operation, type Workspace } from "./newton.ts";
+import {
+  circuitEquation,
+  createWorkspace,
+  type NewtonOutcome,
+  newton,
+  type Operation,
+  type Workspace,
+} from "./newton.ts";
 import type { Problem } from "./problem.ts";
 import { copyState, moveCut, type State } from "./state.ts";
 
@@ -135,7 +142,11 @@ function light(walk: Walk, dark: State, drive: Drive): State | null {
 function applyVoltage(walk: Walk, lit: State, drive: Drive, operation: Operation): State | null {
   const { problem } = walk;
   walk.step = operation.kind === "openCircuit" ? "voltage towards open circuit" : "voltage steps";
-  const inside = (voltage: number): Operation => ({ kind: "voltage", voltage: voltage * problem.thermalVoltage, inside: true });
+  const inside = (voltage: number): Operation => ({
+    kind: "voltage",
+    voltage: voltage * problem.thermalVoltage,
+    inside: true,
+  });
   let newer = lit;
   let older: State | null = null;
   // The sign of the imbalance says which way to go: J falls with v, and both circuit equations are monotone in it.

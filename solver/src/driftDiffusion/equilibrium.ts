@@ -36,11 +36,7 @@ const iterationLimit = 300;
  * Solves for the potential of `state` in place.
  * @param frozenIonCharge charge of held ions in each node's control volume, m⁻²; null where ions follow
  */
-export function solveEquilibrium(
-  problem: Problem,
-  state: State,
-  frozenIonCharge: Float64Array | null,
-): NewtonOutcome {
+export function solveEquilibrium(problem: Problem, state: State, frozenIonCharge: Float64Array | null): NewtonOutcome {
   const groups = frozenIonCharge ? [] : problem.ions;
   const { nodes, pieceNode, pieceLayer, pieceWidth, layers, permittivity } = problem;
   const { potential } = state;

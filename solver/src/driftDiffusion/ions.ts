@@ -26,12 +26,7 @@ export interface IonGroup {
 }
 
 /** The groups of both species, front to back, cations first. */
-export function ionGroups(
-  device: Device,
-  x: Float64Array,
-  edgeLayer: Int32Array,
-  thermalVoltage: number,
-): IonGroup[] {
+export function ionGroups(device: Device, x: Float64Array, edgeLayer: Int32Array, thermalVoltage: number): IonGroup[] {
   const groups: IonGroup[] = [];
   for (const [charge, density, mobility] of [
     [1, "cations", "cationMobility"],

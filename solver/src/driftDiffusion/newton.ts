@@ -217,7 +217,14 @@ export function newton(
     }
     state.voltage += voltageStep;
     residual = largest;
-    if (process.env.TRACE) console.log("  newton", iteration, largest.toExponential(3), "v", (state.voltage*problem.thermalVoltage).toFixed(5));
+    if (process.env.TRACE)
+      console.log(
+        "  newton",
+        iteration,
+        largest.toExponential(3),
+        "v",
+        (state.voltage * problem.thermalVoltage).toFixed(5),
+      );
     if (largest < options.tolerance) return { status: "solved", iterations: iteration, residual };
   }
   return { status: "notConverged", iterations: options.iterations, residual };

@@ -91,8 +91,7 @@ export class RealBlockTridiagonal {
         for (let r = k + 1; r < m; r++) {
           const factor = diagonal[d + r * m + k] * inverse;
           diagonal[d + r * m + k] = factor;
-          if (factor !== 0)
-            for (let c = k + 1; c < m; c++) diagonal[d + r * m + c] -= factor * diagonal[d + k * m + c];
+          if (factor !== 0) for (let c = k + 1; c < m; c++) diagonal[d + r * m + c] -= factor * diagonal[d + k * m + c];
         }
       }
       for (let c = 0; c < m; c++) this.applyInverse(i, upper, d + c, m);
@@ -132,8 +131,7 @@ export class RealBlockTridiagonal {
       const b = i * m;
       for (let r = 0; r < m; r++) {
         let sum = rightHandSide[b + r] * rowScale[b + r];
-        if (i > 0)
-          for (let k = 0; k < m; k++) sum -= lower[i * block + r * m + k] * rightHandSide[b - m + k];
+        if (i > 0) for (let k = 0; k < m; k++) sum -= lower[i * block + r * m + k] * rightHandSide[b - m + k];
         rightHandSide[b + r] = sum;
       }
       this.applyInverse(i, rightHandSide, b, 1);
