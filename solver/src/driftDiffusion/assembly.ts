@@ -26,6 +26,20 @@ export interface BlockMatrix {
   upper: Float64Array;
 }
 
+/** What the small signal needs besides the blocks. */
+export interface SmallSignalParts {
+  /** Coefficient of iω in the diagonal blocks, nodes × m × m. */
+  storage: Float64Array;
+  /** The part of the diagonal blocks that belongs to nodes, not to edges, nodes × m × m. */
+  local: Float64Array;
+  /** Per edge: fluxes J/q of both carriers, their derivatives by Δu, and the slope by Δφ of ln of either (fluxes.ts). */
+  electronFlux: Float64Array;
+  holeFlux: Float64Array;
+  electronConductance: Float64Array;
+  holeConductance: Float64Array;
+  fieldSlope: Float64Array;
+}
+
 export interface Assembly {
   blockSize: number;
   lower: Float64Array;
@@ -36,7 +50,7 @@ export interface Assembly {
   /** ∂F/∂v, nodes × m. */
   byVoltage: Float64Array;
   /** Only for the small signal. */
-  storage: Float64Array | null;
+  smallSignal: SmallSignalParts | null;
   /** Current through the cut edge / q in the direction of x, and its derivatives. */
   current: number;
   currentByVoltage: number;
@@ -48,9 +62,10 @@ export interface Assembly {
 }
 
 /** @param matrix where the blocks are written */
-export function createAssembly(matrix: BlockMatrix, withStorage: boolean): Assembly {
+export function createAssembly(matrix: BlockMatrix, forSmallSignal: boolean): Assembly {
   const { nodes, blockSize, lower, diagonal, upper } = matrix;
   const size = diagonal.length;
+  const perEdge = () => new Float64Array(nodes - 1);
   return {
     blockSize,
     lower,
@@ -58,7 +73,17 @@ export function createAssembly(matrix: BlockMatrix, withStorage: boolean): Assem
     upper,
     residual: new Float64Array(nodes * blockSize),
     byVoltage: new Float64Array(nodes * blockSize),
-    storage: withStorage ? new Float64Array(size) : null,
+    smallSignal: forSmallSignal
+      ? {
+          storage: new Float64Array(size),
+          local: new Float64Array(size),
+          electronFlux: perEdge(),
+          holeFlux: perEdge(),
+          electronConductance: perEdge(),
+          holeConductance: perEdge(),
+          fieldSlope: perEdge(),
+        }
+      : null,
     current: 0,
     currentByVoltage: 0,
     currentByState: new Float64Array(6),
@@ -85,19 +110,20 @@ export function assemble(problem: Problem, state: State, drive: Drive, target: A
   target.diagonal.fill(0);
   target.upper.fill(0);
   target.byVoltage.fill(0);
-  target.storage?.fill(0);
+  target.smallSignal?.storage.fill(0);
   const m = target.blockSize;
   const { residual } = target;
   residual.fill(0);
   for (let i = 0; i < problem.nodes; i++) residual[i * m + 1] = drive.flux * problem.biasGeneration[i];
   for (let i = 0; i < problem.nodes; i++) residual[i * m + 2] = drive.flux * problem.biasGeneration[i];
-  addEdges(problem, state, target);
   addPieces(problem, state, target, traps);
   addInterfaces(problem, state, target);
   addContact(problem, state, target, 0);
   addContact(problem, state, target, problem.nodes - 1);
   if (drive.frozenIonCharge) for (let i = 0; i < problem.nodes; i++) residual[i * m] += drive.frozenIonCharge[i];
   else for (let g = 0; g < problem.ions.length; g++) addIonCharge(problem, problem.ions[g], state, g, target);
+  target.smallSignal?.local.set(target.diagonal);
+  addEdges(problem, state, target);
   fixPotential(problem, state, target, 0);
   fixPotential(problem, state, target, problem.nodes - 1);
 }
@@ -107,7 +133,7 @@ function addEdges(problem: Problem, state: State, target: Assembly): void {
   const { electronConductance, holeConductance, permittivity, edgeLayer } = problem;
   const { electronLevel, holeLevel } = problem.layers;
   const { potential, electronEnergy, holeEnergy, cut } = state;
-  const { lower, diagonal, upper, residual, byVoltage } = target;
+  const { lower, diagonal, upper, residual, byVoltage, smallSignal: parts } = target;
   const m = target.blockSize;
   const block = m * m;
   const { sign } = problem;
@@ -175,6 +201,13 @@ function addEdges(problem: Problem, state: State, target: Assembly): void {
       least = conductance;
       leastEdge = e;
     }
+    if (parts) {
+      parts.electronFlux[e] = electrons;
+      parts.holeFlux[e] = holes;
+      parts.electronConductance[e] = 0.5 * (electronsByRight - electronsByLeft);
+      parts.holeConductance[e] = 0.5 * (holesByRight - holesByLeft);
+      parts.fieldSlope[e] = slope;
+    }
     if (e === cut) {
       const electronsByVoltage = sign * (electronsByPotential - 0.5 * (electronsByRight - electronsByLeft));
       const holesByVoltage = sign * (holesByPotential - 0.5 * (holesByRight - holesByLeft));
@@ -203,7 +236,8 @@ function addEdges(problem: Problem, state: State, target: Assembly): void {
 function addPieces(problem: Problem, state: State, target: Assembly, traps: TrapSink | null): void {
   const { pieceNode, pieceLayer, pieceWidth, layers } = problem;
   const { potential, electronEnergy, holeEnergy } = state;
-  const { diagonal, residual, storage } = target;
+  const { diagonal, residual } = target;
+  const storage = target.smallSignal?.storage;
   const m = target.blockSize;
   for (let k = 0; k < pieceNode.length; k++) {
     const i = pieceNode[k];

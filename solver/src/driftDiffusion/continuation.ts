@@ -15,7 +15,6 @@
  */
 import type { Drive } from "./assembly.ts";
 import { neutralState, solveEquilibrium } from "./equilibrium.ts";
-import { ionCharge } from "./ions.ts";
 import {
   circuitEquation,
   createWorkspace,
@@ -228,12 +227,4 @@ export function steadyState(
   if (!lit) return finish(null);
   best = lit;
   return finish(applyVoltage(walk, lit, drive, operation));
-}
-
-/** Charge of the ions of a state in each node's control volume, to hold them there. */
-export function freezeIons(problem: Problem, state: State): Float64Array {
-  const charge = new Float64Array(problem.nodes);
-  for (let g = 0; g < problem.ions.length; g++)
-    ionCharge(problem.ions[g], state.potential, state.ionLevels[g], state.cut, problem.sign * state.voltage, charge);
-  return charge;
 }

@@ -12,6 +12,8 @@
  * equation. Small signal: an electrochemical potential per node (as for holes and electrons).
  */
 import type { Device } from "../scenario/device.ts";
+import type { Problem } from "./problem.ts";
+import type { State } from "./state.ts";
 
 export interface IonGroup {
   charge: 1 | -1;
@@ -76,16 +78,15 @@ export function ionLevel(group: IonGroup, potential: Float64Array, cut: number, 
   return Math.log(number / sum) - highest;
 }
 
-/** Adds the charge of a group in equilibrium at a level to each node's control volume, m⁻². */
-export function ionCharge(
-  group: IonGroup,
-  potential: Float64Array,
-  level: number,
-  cut: number,
-  step: number,
-  target: Float64Array,
-): void {
-  const { charge, firstNode, lastNode, width } = group;
-  for (let i = firstNode; i <= lastNode; i++)
-    target[i] += charge * width[i - firstNode] * Math.exp(level - charge * (potential[i] + (i > cut ? step : 0)));
+/** Charge of the ions of a state in each node's control volume, m⁻²: to hold them there. */
+export function freezeIons(problem: Problem, state: State): Float64Array {
+  const held = new Float64Array(problem.nodes);
+  const step = problem.sign * state.voltage;
+  problem.ions.forEach(({ charge, firstNode, lastNode, width }, g) => {
+    for (let i = firstNode; i <= lastNode; i++) {
+      const phi = state.potential[i] + (i > state.cut ? step : 0);
+      held[i] += charge * width[i - firstNode] * Math.exp(state.ionLevels[g] - charge * phi);
+    }
+  });
+  return held;
 }

@@ -20,9 +20,12 @@ export interface Mesh {
   edgeLayer: Int32Array;
 }
 
-const growth = 0.07;
-const cellsAcrossLayer = 90;
-const fractionOfScreening = 0.12;
+const env = (k: string, d: number) => (process.env[k] ? +process.env[k]! : d);
+const growth = env("G", 0.07);
+const cellsAcrossLayer = env("C", 90);
+const fewestCells = env("N", 420);
+const mostCells = 2000;
+const fractionOfScreening = env("F", 0.02);
 
 /** ∫dx/h from a boundary to distance s. */
 function cellsWithin(s: number, atBoundary: number, largest: number): number {
@@ -71,7 +74,7 @@ export function buildMesh(layers: readonly Layer[], thermalVoltage: number, node
     (layer, k) => 2 * cellsWithin(layer.thickness / 2, spacing[k], layer.thickness / cellsAcrossLayer),
   );
   const total = natural.reduce((sum, cells) => sum + cells, 0);
-  const share = nodes === null ? Math.min(1, 3000 / total) : (nodes - 1) / total;
+  const share = nodes === null ? Math.max(fewestCells / total, Math.min(1, mostCells / total)) : (nodes - 1) / total;
   const counts = natural.map((cells) => Math.max(2, Math.round(cells * share)));
   if (nodes !== null) {
     // Rounding leaves a few edges over or short: the layers with the most edges take them.

@@ -14,190 +14,242 @@
  * (1985).
  */
 import { elementaryCharge } from "../constants.ts";
+import { ComplexBlockTridiagonal } from "../linearAlgebra/complexBlockTridiagonal.ts";
 import { harmonicSolver } from "../linearAlgebra/harmonicSolver.ts";
-import type { HarmonicRelaxation, HarmonicSolution, HarmonicSystem } from "../linearAlgebra/harmonicSystem.ts";
+import type { HarmonicRelaxation } from "../linearAlgebra/harmonicSystem.ts";
 import { type Assembly, assemble, createAssembly, type Drive } from "./assembly.ts";
-import { freezeIons } from "./continuation.ts";
 import { edgeFlux, fieldFactor, flux } from "./fluxes.ts";
+import { freezeIons, type IonGroup } from "./ions.ts";
+import {
+  addCorrection,
+  type EdgeFluxes,
+  type Field,
+  type LinearEquations,
+  linearFluxes,
+  linearResidual,
+  totalCurrent,
+} from "./linearFluxes.ts";
 import type { Problem } from "./problem.ts";
 import { copyState, moveCut, type State } from "./state.ts";
 import { trapRelaxations } from "./traps.ts";
 
-export interface Linearisation {
-  problem: Problem;
+export interface Linearisation extends LinearEquations {
+  /** The state with its e.m.f. across the cut edge. */
   state: State;
-  system: HarmonicSystem;
-  /** Unknown of each ion species that is followed, or −1. */
-  cationUnknown: number;
-  anionUnknown: number;
+  /** Ion species of unknowns 3, 4, … */
+  ionUnknowns: readonly { charge: 1 | -1; unknown: number }[];
 }
 
 /** Right-hand sides of the system. */
 export const lightColumn = 0;
 export const voltageColumn = 1;
 
-/** Ion rows: fluxes, storage and charge of a group, with an energy per node. */
-function addIons(problem: Problem, state: State, target: Assembly, unknown: number, g: number): void {
+/** Ion rows of a group: charge, storage and fluxes, with an energy per node. */
+function addIons(
+  problem: Problem,
+  state: State,
+  target: Assembly,
+  group: IonGroup,
+  level: number,
+  unknown: number,
+  conductance: Float64Array,
+): void {
   const m = target.blockSize;
   const block = m * m;
-  const { sign, permittivity, nodes } = problem;
+  const { sign, nodes } = problem;
   const step = sign * state.voltage;
-  const { charge, firstNode, lastNode, width, conductance } = problem.ions[g];
-  const level = state.ionLevels[g];
-  const { lower, diagonal, upper, byVoltage, storage } = target;
+  const { charge, firstNode, lastNode, width } = group;
+  const { lower, diagonal, upper, byVoltage } = target;
+  const { storage, local } = target.smallSignal!;
   const logDensity = (i: number) => level - charge * (state.potential[i] + (i > state.cut ? step : 0));
   for (let i = firstNode; i <= lastNode; i++) {
     const ions = width[i - firstNode] * Math.exp(logDensity(i));
     const d = i * block;
-    if (i > 0 && i < nodes - 1) {
-      diagonal[d] += ions;
-      diagonal[d + unknown] += ions;
-    }
+    if (i > 0 && i < nodes - 1)
+      for (const blocks of [diagonal, local]) {
+        blocks[d] += ions;
+        blocks[d + unknown] += ions;
+      }
     const row = d + unknown * m;
-    storage![row] = -charge * ions;
-    storage![row + unknown] = -charge * ions;
+    storage[row] = -charge * ions;
+    storage[row + unknown] = -charge * ions;
   }
+  const corner = unknown * m + unknown;
   for (let e = firstNode; e < lastNode; e++) {
     const f = e + 1;
     const atCut = e === state.cut;
     const potentialStep = state.potential[f] - state.potential[e] + (atCut ? step : 0);
     const mean = 0.5 * (logDensity(e) + logDensity(f));
-    edgeFlux(conductance[e - firstNode], mean, potentialStep, fieldFactor(potentialStep), 0);
+    edgeFlux(group.conductance[e - firstNode], mean, potentialStep, fieldFactor(potentialStep), 0);
+    conductance[e] = flux[1];
     const c = charge * flux[1];
-    diagonal[e * block + unknown * m + unknown] -= c;
-    upper[e * block + unknown * m + unknown] += c;
-    lower[f * block + unknown * m + unknown] += c;
-    diagonal[f * block + unknown * m + unknown] -= c;
+    diagonal[e * block + corner] -= c;
+    upper[e * block + corner] += c;
+    lower[f * block + corner] += c;
+    diagonal[f * block + corner] -= c;
     if (atCut) {
       byVoltage[e * m + unknown] += sign * c;
       byVoltage[f * m + unknown] -= sign * c;
     }
   }
-  void permittivity;
 }
 
 /** Linearise about a solved state. */
 export function linearise(problem: Problem, solved: State, drive: Drive): Linearisation {
   const follow = drive.frozenIonCharge === null;
-  const has = (charge: 1 | -1) => follow && problem.ions.some((group) => group.charge === charge);
-  let unknowns = 3;
-  const cationUnknown = has(1) ? unknowns++ : -1;
-  const anionUnknown = has(-1) ? unknowns++ : -1;
+  const ionUnknowns = ([1, -1] as const)
+    .filter((charge) => follow && problem.ions.some((group) => group.charge === charge))
+    .map((charge, k) => ({ charge, unknown: 3 + k }));
+  const m = 3 + ionUnknowns.length;
   const { nodes } = problem;
-  const size = nodes * unknowns * unknowns;
+  const size = nodes * m * m;
   const matrix = {
     nodes,
-    blockSize: unknowns,
+    blockSize: m,
     lower: new Float64Array(size),
     diagonal: new Float64Array(size),
     upper: new Float64Array(size),
   };
   const target = createAssembly(matrix, true);
+  const parts = target.smallSignal!;
   const state = copyState(solved);
   const relaxations: HarmonicRelaxation[] = [];
   const held = { flux: drive.flux, frozenIonCharge: drive.frozenIonCharge ?? freezeIons(problem, state) };
-  assemble(problem, state, held, target, trapRelaxations(problem, target, relaxations));
-  if (target.leastConductingEdge !== state.cut) {
-    moveCut(problem, state, target.leastConductingEdge);
+  const fill = () => {
     relaxations.length = 0;
     assemble(problem, state, held, target, trapRelaxations(problem, target, relaxations));
+  };
+  fill();
+  if (target.leastConductingEdge !== state.cut) {
+    moveCut(problem, state, target.leastConductingEdge);
+    fill();
   }
-  if (follow) {
+  const ionConductance = ionUnknowns.map(({ charge, unknown }) => {
+    const conductance = new Float64Array(nodes - 1);
     problem.ions.forEach((group, g) => {
-      addIons(problem, state, target, group.charge === 1 ? cationUnknown : anionUnknown, g);
+      if (group.charge === charge) addIons(problem, state, target, group, state.ionLevels[g], unknown, conductance);
     });
-    for (const unknown of [cationUnknown, anionUnknown]) {
-      if (unknown < 0) continue;
-      for (let i = 0; i < nodes; i++) {
-        const place = (i * unknowns + unknown) * unknowns + unknown;
-        if (target.diagonal[place] === 0) target.diagonal[place] = 1;
-      }
+    for (let i = 0; i < nodes; i++) {
+      const corner = (i * m + unknown) * m + unknown;
+      if (target.diagonal[corner] !== 0) continue;
+      target.diagonal[corner] = 1;
+      parts.local[corner] = 1;
     }
-  }
-  const light = new Float64Array(nodes * unknowns);
+    return conductance;
+  });
+  const light = new Float64Array(nodes * m);
   for (let i = 0; i < nodes; i++) {
-    light[i * unknowns + 1] = problem.modulationGeneration[i];
-    light[i * unknowns + 2] = problem.modulationGeneration[i];
+    light[i * m + 1] = problem.modulationGeneration[i];
+    light[i * m + 2] = problem.modulationGeneration[i];
   }
   return {
     problem,
     state,
-    cationUnknown,
-    anionUnknown,
+    parts,
+    cut: state.cut,
+    ionUnknowns,
+    ionConductance,
+    ionCharge: ionUnknowns.map(({ charge }) => charge),
     system: {
       nodes,
-      blockSize: unknowns,
+      blockSize: m,
       lower: target.lower,
       diagonal: target.diagonal,
       upper: target.upper,
-      storage: target.storage!,
+      storage: parts.storage,
       relaxations,
       rightHandSides: [light, target.byVoltage],
     },
   };
 }
 
-/** Sign with which a row's flux counts in the current: electrons and anions enter their rows with the opposite one. */
-const rowSign = (linear: Linearisation, unknown: number) => (unknown === 1 || unknown === linear.anionUnknown ? -1 : 1);
-
-export interface EdgeCurrent {
-  /** Conduction by each unknown's row (1 electrons, 2 holes, 3, 4 ions); 0 is the displacement. */
-  real: Float64Array;
-  imaginary: Float64Array;
+/** Current / q in the direction of x on the cut edge, and its spread over depth relative to its size. */
+interface Reading {
+  re: number;
+  im: number;
+  spread: number;
 }
 
-/** Contributions to J_x/q through edge e, by unknown, for one solution; fills `current`. */
-export function edgeCurrent(
-  linear: Linearisation,
-  solution: HarmonicSolution,
-  frequency: number,
-  omega: number,
-  column: number,
-  e: number,
-  current: EdgeCurrent,
-): void {
-  const { system, problem, state } = linear;
-  const m = system.blockSize;
-  const stored = solution.lastNode - solution.firstNode + 1;
-  const base = ((frequency * system.rightHandSides.length + column) * stored + e - solution.firstNode) * m;
-  const { real, imaginary } = solution;
-  const emf = column === voltageColumn && e === state.cut;
-  for (let row = 1; row < m; row++) {
-    let re = 0;
-    let im = 0;
-    const fromLeft = ((e + 1) * m + row) * m;
-    const fromRight = (e * m + row) * m;
-    for (let c = 0; c < m; c++) {
-      const l = -system.lower[fromLeft + c];
-      const u = system.upper[fromRight + c];
-      re += l * real[base + c] + u * real[base + m + c];
-      im += l * imaginary[base + c] + u * imaginary[base + m + c];
-    }
-    if (emf) re += system.rightHandSides[voltageColumn][(e + 1) * m + row];
-    const sign = rowSign(linear, row);
-    current.real[row] = sign * re;
-    current.imaginary[row] = sign * im;
+/** A total smaller than this part of its contributions is zero within rounding: the spread is then relative to them. */
+const roundingFloor = 1e-8;
+
+function readCurrent(linear: Linearisation, field: Field, omega: number, emf: number): Reading {
+  const m = linear.system.blockSize;
+  const fluxes: EdgeFluxes = { re: new Float64Array(m), im: new Float64Array(m) };
+  linearFluxes(linear, field, linear.cut, emf, fluxes);
+  const { re, im } = totalCurrent(fluxes, omega);
+  let largestDifference = 0;
+  let largestPart = 0;
+  for (let e = 0; e < linear.problem.nodes - 1; e++) {
+    linearFluxes(linear, field, e, emf, fluxes);
+    const here = totalCurrent(fluxes, omega);
+    const difference = Math.hypot(here.re - re, here.im - im);
+    if (difference > largestDifference) largestDifference = difference;
+    const part = Math.hypot(fluxes.re[1], fluxes.im[1]);
+    if (part > largestPart) largestPart = part;
   }
-  const step = emf ? problem.sign : 0;
-  current.real[0] = omega * problem.permittivity[e] * (imaginary[base + m] - imaginary[base]);
-  current.imaginary[0] = -omega * problem.permittivity[e] * (real[base + m] - real[base] + step);
+  const size = Math.max(Math.hypot(re, im), roundingFloor * largestPart);
+  return { re, im, spread: size > 0 ? largestDifference / size : 0 };
+}
+
+/** Above this spread a solution is refined in conservative form. */
+const spreadWanted = 3e-9;
+const refinementLimit = 4;
+
+/**
+ * Solutions at one frequency (rad/s) to the last digit of the conservative equations.
+ * @returns fields of light and voltage and their readings; null when singular
+ */
+export function solveRefined(linear: Linearisation, omega: number): { field: Field; reading: Reading }[] | null {
+  const { system } = linear;
+  const matrix = new ComplexBlockTridiagonal(system);
+  if (!matrix.factor(omega)) return null;
+  return [lightColumn, voltageColumn].map((column) => {
+    const b = system.rightHandSides[column];
+    const emf = column === voltageColumn ? 1 : 0;
+    const field: Field = { re: b.slice(), im: new Float64Array(b.length), lowRe: null, lowIm: null };
+    matrix.solve(field.re, field.im);
+    let best = { field, reading: readCurrent(linear, field, omega, emf) };
+    const residual = { re: new Float64Array(b.length), im: new Float64Array(b.length) };
+    for (let step = 0; step < refinementLimit && best.reading.spread > 0.01 * spreadWanted; step++) {
+      const next = {
+        re: best.field.re.slice(),
+        im: best.field.im.slice(),
+        lowRe: best.field.lowRe?.slice() ?? null,
+        lowIm: best.field.lowIm?.slice() ?? null,
+      };
+      linearResidual(linear, next, omega, emf ? null : b, emf, residual);
+      matrix.solve(residual.re, residual.im);
+      addCorrection(next, residual.re, residual.im);
+      const reading = readCurrent(linear, next, omega, emf);
+      if (!(reading.spread < best.reading.spread)) break;
+      best = { field: next, reading };
+    }
+    return best;
+  });
 }
 
 export interface Response {
+  /** Hz. */
   frequencies: Float64Array;
   yieldReal: Float64Array;
   yieldImaginary: Float64Array;
   /** S m⁻². */
   admittanceReal: Float64Array;
   admittanceImaginary: Float64Array;
-  /** Largest relative spread over depth, per right-hand side. */
+  /** Largest spread of the current over depth relative to its size: of light, of voltage. */
   spread: [number, number];
-  singular: boolean;
+  status: "solved" | "singular" | "aborted";
 }
 
 /** Q_i and Y_i at every frequency (Hz). */
-export function respond(linear: Linearisation, frequencies: Float64Array, signal?: AbortSignal): Response | null {
-  const { problem, state, system } = linear;
+export function respond(
+  linear: Linearisation,
+  frequencies: Float64Array,
+  signal?: { readonly aborted: boolean },
+): Response {
+  const { problem, system } = linear;
+  const { nodes, blockSize: m } = system;
   const count = frequencies.length;
   const result: Response = {
     frequencies,
@@ -206,44 +258,37 @@ export function respond(linear: Linearisation, frequencies: Float64Array, signal
     admittanceReal: new Float64Array(count),
     admittanceImaginary: new Float64Array(count),
     spread: [0, 0],
-    singular: false,
+    status: "solved",
   };
   const solver = harmonicSolver(system);
-  const current: EdgeCurrent = { real: new Float64Array(5), imaginary: new Float64Array(5) };
   const perVoltage = (-problem.sign * elementaryCharge) / problem.thermalVoltage;
-  const batch = Math.max(1, Math.min(16, Math.floor(200_000 / (problem.nodes * system.blockSize))));
+  const length = nodes * m;
+  const batch = Math.max(1, Math.min(16, Math.floor(200_000 / length)));
   for (let start = 0; start < count; start += batch) {
-    if (signal?.aborted) return null;
     const omegas = frequencies.slice(start, start + batch).map((f) => 2 * Math.PI * f);
-    const solution = solver.solve(omegas, { refinements: 1 });
-    if (solution.status.includes("singular")) result.singular = true;
-    for (let k = 0; k < omegas.length; k++)
-      for (const column of [lightColumn, voltageColumn]) {
-        let re = 0;
-        let im = 0;
-        const total = (e: number) => {
-          edgeCurrent(linear, solution, k, omegas[k], column, e, current);
-          re = current.real.reduce((sum, value) => sum + value, 0);
-          im = current.imaginary.reduce((sum, value) => sum + value, 0);
-        };
-        total(state.cut);
-        const [cutRe, cutIm] = [re, im];
-        let spread = 0;
-        for (let e = 0; e < problem.nodes - 1; e++) {
-          total(e);
-          spread = Math.max(spread, Math.hypot(re - cutRe, im - cutIm));
-        }
-        const size = Math.hypot(cutRe, cutIm);
-        if (size > 0) result.spread[column] = Math.max(result.spread[column], spread / size);
-        const f = start + k;
-        if (column === lightColumn) {
-          result.yieldReal[f] = problem.sign * cutRe;
-          result.yieldImaginary[f] = problem.sign * cutIm;
-        } else {
-          result.admittanceReal[f] = perVoltage * cutRe;
-          result.admittanceImaginary[f] = perVoltage * cutIm;
-        }
+    const solution = solver.solve(omegas);
+    for (let k = 0; k < omegas.length; k++) {
+      if (signal?.aborted) return { ...result, status: "aborted" };
+      let readings = [lightColumn, voltageColumn].map((column) => {
+        const from = (k * system.rightHandSides.length + column) * length;
+        const re = solution.real.subarray(from, from + length);
+        const im = solution.imaginary.subarray(from, from + length);
+        return readCurrent(linear, { re, im, lowRe: null, lowIm: null }, omegas[k], column === voltageColumn ? 1 : 0);
+      });
+      if (solution.status[k] === "singular" || readings.some(({ spread }) => !(spread < spreadWanted))) {
+        const refined = solveRefined(linear, omegas[k]);
+        if (!refined) return { ...result, status: "singular" };
+        readings = refined.map(({ reading }, c) => (reading.spread < readings[c].spread ? reading : readings[c]));
       }
+      const [light, voltage] = readings;
+      result.yieldReal[start + k] = problem.sign * light.re;
+      result.yieldImaginary[start + k] = problem.sign * light.im;
+      result.admittanceReal[start + k] = perVoltage * voltage.re;
+      result.admittanceImaginary[start + k] = perVoltage * voltage.im;
+      readings.forEach(({ spread }, c) => {
+        if (spread > result.spread[c]) result.spread[c] = spread;
+      });
+    }
   }
   return result;
 }
