@@ -12,7 +12,7 @@
  * Box method: Selberherr 1984, ch. 6; linearised about the state as S. E. Laux, IEEE Trans. Electron Devices 32, 2028 (1985).
  */
 import { edgeFlux, fieldFactor, fieldSlope, flux } from "./fluxes.ts";
-import type { IonGroup } from "./ions.ts";
+import type { HeldIons, IonGroup } from "./ions.ts";
 import type { Problem } from "./problem.ts";
 import { excessProduct } from "./recombination.ts";
 import type { State } from "./state.ts";
@@ -56,6 +56,12 @@ export interface Assembly {
   currentByVoltage: number;
   /** By φ̃, u_n, u_p of the node in front of the cut, then of the node behind it. */
   currentByState: Float64Array;
+  /** The same current from generation − recombination − flow into the wrong contacts, and its derivatives, nodes × m. */
+  balance: number;
+  balanceByState: Float64Array;
+  /** Rounding to expect in `current` and in `balance`. */
+  currentNoise: number;
+  balanceNoise: number;
   /** Smallest sum of conductances of both carriers over the edges, and where. */
   leastConductance: number;
   leastConductingEdge: number;
@@ -87,6 +93,10 @@ export function createAssembly(matrix: BlockMatrix, forSmallSignal: boolean): As
     current: 0,
     currentByVoltage: 0,
     currentByState: new Float64Array(6),
+    balance: 0,
+    balanceByState: new Float64Array(nodes * blockSize),
+    currentNoise: 0,
+    balanceNoise: 0,
     leastConductance: 0,
     leastConductingEdge: 0,
   };
@@ -96,8 +106,8 @@ export function createAssembly(matrix: BlockMatrix, forSmallSignal: boolean): As
 export interface Drive {
   /** Photons m⁻² s⁻¹ at the bias wavelength. */
   flux: number;
-  /** Charge of frozen ions in each node's control volume, m⁻²; null where ions follow. */
-  frozenIonCharge: Float64Array | null;
+  /** Ions held where they are; null where they follow. */
+  heldIons: HeldIons | null;
 }
 
 /** Dynamic traps of one piece, for the small signal (see traps.ts). */
@@ -120,9 +130,10 @@ export function assemble(problem: Problem, state: State, drive: Drive, target: A
   addInterfaces(problem, state, target);
   addContact(problem, state, target, 0);
   addContact(problem, state, target, problem.nodes - 1);
-  if (drive.frozenIonCharge) for (let i = 0; i < problem.nodes; i++) residual[i * m] += drive.frozenIonCharge[i];
+  if (drive.heldIons) for (let i = 0; i < problem.nodes; i++) residual[i * m] += drive.heldIons.charge[i];
   else for (let g = 0; g < problem.ions.length; g++) addIonCharge(problem, problem.ions[g], state, g, target);
   target.smallSignal?.local.set(target.diagonal);
+  balanceCurrent(problem, state, drive, target);
   addEdges(problem, state, target);
   fixPotential(problem, state, target, 0);
   fixPotential(problem, state, target, problem.nodes - 1);
@@ -140,6 +151,7 @@ function addEdges(problem: Problem, state: State, target: Assembly): void {
   const step = sign * state.voltage;
   let least = Infinity;
   let leastEdge = 0;
+  let noise = 0;
   for (let e = 0; e < problem.nodes - 1; e++) {
     const f = e + 1;
     const layer = edgeLayer[e];
@@ -197,6 +209,10 @@ function addEdges(problem: Problem, state: State, target: Assembly): void {
     diagonal[row + 2] -= holesByRight;
 
     const conductance = electronsByRight - electronsByLeft + holesByRight - holesByLeft;
+    const rounding =
+      (electronsByRight - electronsByLeft) * Math.abs(electronEnergy[e]) +
+      (holesByRight - holesByLeft) * Math.abs(holeEnergy[e]);
+    if (rounding > noise) noise = rounding;
     if (conductance < least) {
       least = conductance;
       leastEdge = e;
@@ -228,8 +244,35 @@ function addEdges(problem: Problem, state: State, target: Assembly): void {
       by[5] = holesByRight;
     }
   }
+  target.currentNoise = 1.1e-16 * noise;
   target.leastConductance = least;
   target.leastConductingEdge = leastEdge;
+}
+
+/**
+ * The current through the cut edge as a balance: electrons made on the hole contact's side of it and holes made on the
+ * electron contact's side, less what recombines there or leaves through the wrong contact. Called while rows 1 and 2 hold
+ * nothing but that.
+ */
+function balanceCurrent(problem: Problem, state: State, drive: Drive, target: Assembly): void {
+  const { residual, diagonal, balanceByState, blockSize: m } = target;
+  const { sign } = problem;
+  balanceByState.fill(0);
+  let sum = 0;
+  let noise = 0;
+  for (let i = 0; i < problem.nodes; i++) {
+    const behind = i > state.cut;
+    const row = behind === sign > 0 ? 1 : 2;
+    const value = residual[i * m + row];
+    sum += value;
+    noise += Math.abs(value) + drive.flux * problem.biasGeneration[i];
+    for (let c = 0; c < 3; c++) balanceByState[i * m + c] = -sign * diagonal[(i * m + row) * m + c];
+  }
+  // A flow into a contact is a difference of two large numbers wherever the contact is nearly in equilibrium.
+  const [electronSide, holeSide] = sign > 0 ? [problem.front, problem.back] : [problem.back, problem.front];
+  noise += electronSide.holeVelocity * electronSide.holeDensity + holeSide.electronVelocity * holeSide.electronDensity;
+  target.balance = sign * sum;
+  target.balanceNoise = 2.2e-16 * noise;
 }
 
 /** Charges, recombination and storage in all pieces of control volumes. */

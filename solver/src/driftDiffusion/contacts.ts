@@ -27,10 +27,12 @@ export interface ContactTable {
 /** A carrier that can neither recombine nor leave: its density would be undetermined. */
 export class ContactRefusal extends Error {
   readonly path: string;
-  constructor(path: string, message: string) {
+  readonly allowed: string;
+  constructor(path: string, message: string, allowed: string) {
     super(message);
     this.name = "ContactRefusal";
     this.path = path;
+    this.allowed = allowed;
   }
 }
 
@@ -66,6 +68,7 @@ export function refuseIsolatedCarriers(device: Device): void {
     if (device.front[field] === 0 && device.back[field] === 0)
       throw new ContactRefusal(
         `stack.${minoritySide}.${field}CmPerS`,
-        `is 0 at both contacts while nothing recombines: ${carrier} could neither leave nor recombine; allowed: above 0 at one contact, or recombination in a layer or at an interface`,
+        `is 0 at both contacts while nothing recombines: ${carrier} could neither leave nor recombine`,
+        "above 0 at one contact, or recombination in a layer or at an interface",
       );
 }

@@ -13,7 +13,8 @@
  * |---|---|---|
  * | v | V_i / V_T | 1 |
  */
-import type { Drive } from "./assembly.ts";
+import { elementaryCharge } from "../constants.ts";
+import { assemble, type Drive } from "./assembly.ts";
 import { neutralState, solveEquilibrium } from "./equilibrium.ts";
 import {
   circuitEquation,
@@ -21,6 +22,7 @@ import {
   type NewtonOutcome,
   newton,
   type Operation,
+  steadyCurrent,
   type Workspace,
 } from "./newton.ts";
 import type { Problem } from "./problem.ts";
@@ -29,7 +31,7 @@ import { copyState, moveCut, type State } from "./state.ts";
 export interface SteadyOptions {
   /** Newton iterations in total. */
   iterations?: number;
-  signal?: AbortSignal;
+  signal?: { readonly aborted: boolean };
   /** A state to begin from: of this problem, with its own light and voltage. */
   start?: State;
 }
@@ -42,6 +44,8 @@ export interface SteadyState {
   step: string;
   /** Best iterate; the solution where solved. */
   state: State;
+  /** Delivered by the cell itself, inside shunt and series resistance, A m⁻². */
+  current: number;
   drive: Drive;
   residual: number;
   iterations: number;
@@ -60,7 +64,7 @@ class Walk {
   readonly work: Workspace;
   readonly problem: Problem;
   readonly limit: number;
-  readonly signal: AbortSignal | undefined;
+  readonly signal: { readonly aborted: boolean } | undefined;
 
   constructor(problem: Problem, options: SteadyOptions) {
     this.problem = problem;
@@ -92,7 +96,7 @@ class Walk {
 
   /** The circuit's equation at the state that was solved last. */
   imbalance(operation: Operation, state: State): number {
-    return circuitEquation(this.problem, operation, this.work.assembly.current, state.voltage).value;
+    return circuitEquation(this.problem, operation, steadyCurrent(this.work.assembly), state.voltage).value;
   }
 }
 
@@ -202,22 +206,29 @@ export function steadyState(
 ): SteadyState {
   const walk = new Walk(problem, options);
   let best = options.start ?? neutralState(problem);
-  const finish = (state: State | null): SteadyState => ({
-    status: state ? "solved" : walk.status === "solved" ? "notConverged" : walk.status,
-    step: walk.step,
-    state: state ?? best,
-    drive,
-    residual: walk.residual,
-    iterations: walk.iterations,
-  });
+  const finish = (state: State | null): SteadyState => {
+    const last = state ?? best;
+    assemble(problem, last, drive, walk.work.assembly, null);
+    return {
+      status: state ? "solved" : walk.status === "solved" ? "notConverged" : walk.status,
+      step: walk.step,
+      state: last,
+      current: problem.sign * elementaryCharge * steadyCurrent(walk.work.assembly),
+      drive,
+      residual: walk.residual,
+      iterations: walk.iterations,
+    };
+  };
   if (options.start) {
     walk.step = "operating point from a neighbouring state";
     const solved = walk.solve(options.start, drive, operation);
     if (solved || walk.stopped) return finish(solved?.state ?? null);
+    const moved = applyVoltage(walk, options.start, drive, operation);
+    if (moved || walk.stopped) return finish(moved);
   }
   walk.step = "equilibrium in the dark";
   const dark = neutralState(problem);
-  const outcome = solveEquilibrium(problem, dark, drive.frozenIonCharge);
+  const outcome = solveEquilibrium(problem, dark, drive.heldIons);
   walk.iterations += outcome.iterations;
   walk.residual = outcome.residual;
   walk.status = outcome.status;

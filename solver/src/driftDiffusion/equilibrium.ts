@@ -6,6 +6,7 @@
  * Ions follow: their number couples all potentials of a group, one border unknown each (ions.ts).
  */
 import { RealBlockTridiagonal } from "../linearAlgebra/realBlockTridiagonal.ts";
+import type { HeldIons } from "./ions.ts";
 import { balanceIons, type NewtonOutcome, solveDense } from "./newton.ts";
 import type { Problem } from "./problem.ts";
 import type { State } from "./state.ts";
@@ -34,10 +35,10 @@ const iterationLimit = 300;
 
 /**
  * Solves for the potential of `state` in place.
- * @param frozenIonCharge charge of held ions in each node's control volume, m⁻²; null where ions follow
+ * @param heldIons ions held where they are; null where they follow
  */
-export function solveEquilibrium(problem: Problem, state: State, frozenIonCharge: Float64Array | null): NewtonOutcome {
-  const groups = frozenIonCharge ? [] : problem.ions;
+export function solveEquilibrium(problem: Problem, state: State, heldIons: HeldIons | null): NewtonOutcome {
+  const groups = heldIons ? [] : problem.ions;
   const { nodes, pieceNode, pieceLayer, pieceWidth, layers, permittivity } = problem;
   const { potential } = state;
   const matrix = new RealBlockTridiagonal(nodes, 1);
@@ -73,7 +74,7 @@ export function solveEquilibrium(problem: Problem, state: State, frozenIonCharge
       step[i] += pieceWidth[k] * charge;
       matrix.diagonal[i] += pieceWidth[k] * slope;
     }
-    if (frozenIonCharge) for (let i = 0; i < nodes; i++) step[i] += frozenIonCharge[i];
+    if (heldIons) for (let i = 0; i < nodes; i++) step[i] += heldIons.charge[i];
     const dense = new Float64Array(size * size);
     const right = new Float64Array(size);
     groups.forEach(({ charge, firstNode, lastNode, width }, g) => {

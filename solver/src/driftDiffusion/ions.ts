@@ -78,14 +78,30 @@ export function ionLevel(group: IonGroup, potential: Float64Array, cut: number, 
   return Math.log(number / sum) - highest;
 }
 
-/** Charge of the ions of a state in each node's control volume, m⁻²: to hold them there. */
-export function freezeIons(problem: Problem, state: State): Float64Array {
-  const held = new Float64Array(problem.nodes);
+/** Ions held at the profile of a state. */
+export interface HeldIons {
+  /** Charge in each node's control volume, m⁻². */
+  charge: Float64Array;
+  /** Concentrations, m⁻³, nodes. */
+  cations: Float64Array;
+  anions: Float64Array;
+}
+
+/** The ions of a state in equilibrium with it, to hold them there or to look at them. */
+export function holdIons(problem: Problem, state: State): HeldIons {
+  const held: HeldIons = {
+    charge: new Float64Array(problem.nodes),
+    cations: new Float64Array(problem.nodes),
+    anions: new Float64Array(problem.nodes),
+  };
   const step = problem.sign * state.voltage;
   problem.ions.forEach(({ charge, firstNode, lastNode, width }, g) => {
+    const species = charge === 1 ? held.cations : held.anions;
     for (let i = firstNode; i <= lastNode; i++) {
       const phi = state.potential[i] + (i > state.cut ? step : 0);
-      held[i] += charge * width[i - firstNode] * Math.exp(state.ionLevels[g] - charge * phi);
+      const density = Math.exp(state.ionLevels[g] - charge * phi);
+      species[i] += density;
+      held.charge[i] += charge * width[i - firstNode] * density;
     }
   });
   return held;

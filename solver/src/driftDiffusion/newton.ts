@@ -49,9 +49,7 @@ export interface NewtonOutcome {
 export interface NewtonOptions {
   iterations: number;
   tolerance: number;
-  signal?: AbortSignal;
-  /** Stop early once the step has grown for several iterations. */
-  impatient?: boolean;
+  signal?: { readonly aborted: boolean };
 }
 
 /** The circuit's equation and its derivatives by J_x/q and v. Zero at the operating point. */
@@ -70,6 +68,10 @@ export function circuitEquation(problem: Problem, operation: Operation, current:
 
 export const voltageIsUnknown = (problem: Problem, operation: Operation): boolean =>
   operation.kind === "openCircuit" || (problem.device.circuit.seriesResistance > 0 && !operation.inside);
+
+/** J_x/q at the state assembled last: from the balance or from the cut edge, whichever is less noisy. */
+export const steadyCurrent = (assembly: Assembly): number =>
+  assembly.balanceNoise < assembly.currentNoise ? assembly.balance : assembly.current;
 
 /** Ion levels that hold the numbers of ions, in place. */
 export function balanceIons(problem: Problem, state: State): void {
@@ -152,16 +154,18 @@ function linearStep(problem: Problem, state: State, work: Workspace, operation: 
     }
   }
   if (withVoltage) {
-    const equation = circuitEquation(problem, operation, assembly.current, state.voltage);
-    const first = state.cut * 3;
+    const byBalance = assembly.balanceNoise < assembly.currentNoise;
+    const equation = circuitEquation(problem, operation, steadyCurrent(assembly), state.voltage);
+    const derivatives = byBalance ? assembly.balanceByState : assembly.currentByState;
+    const first = byBalance ? 0 : state.cut * 3;
     const row = groups * size;
     right[groups] = -equation.value;
-    for (let j = 0; j < 6; j++) {
-      const weight = equation.byCurrent * assembly.currentByState[j];
+    for (let j = 0; j < derivatives.length; j++) {
+      const weight = equation.byCurrent * derivatives[j];
       right[groups] -= weight * step[first + j];
       for (let k = 0; k < size; k++) dense[row + k] += weight * columns[k][first + j];
     }
-    dense[row + groups] += equation.byCurrent * assembly.currentByVoltage + equation.byVoltage;
+    dense[row + groups] += equation.byCurrent * (byBalance ? 0 : assembly.currentByVoltage) + equation.byVoltage;
   }
   if (!solveDense(dense, right)) return null;
   for (let k = 0; k < size; k++) {
@@ -188,10 +192,12 @@ export function newton(
   options: NewtonOptions,
 ): NewtonOutcome {
   const { assembly } = work;
-  const ionsFollow = drive.frozenIonCharge === null;
+  const ionsFollow = drive.heldIons === null;
   if (!voltageIsUnknown(problem, operation) && operation.kind === "voltage")
     state.voltage = operation.voltage / problem.thermalVoltage;
   let residual = Infinity;
+  let smallest = Infinity;
+  let sinceSmallest = 0;
   for (let iteration = 1; iteration <= options.iterations; iteration++) {
     if (options.signal?.aborted) return { status: "aborted", iterations: iteration - 1, residual };
     if (ionsFollow) balanceIons(problem, state);
@@ -202,30 +208,37 @@ export function newton(
     }
     const voltageStep = linearStep(problem, state, work, operation, ionsFollow);
     if (voltageStep === null) return { status: "singular", iterations: iteration, residual };
-    const step = assembly.residual;
-    let largest = Math.abs(voltageStep);
-    for (let i = 0; i < problem.nodes; i++) {
-      const potentialStep = step[i * 3];
-      const electrons = potentialStep + step[i * 3 + 1];
-      const holes = -potentialStep - step[i * 3 + 2];
-      const size = Math.max(Math.abs(potentialStep), Math.abs(electrons), Math.abs(holes));
-      if (!(size < Infinity)) return { status: "singular", iterations: iteration, residual };
-      if (size > largest) largest = size;
-      state.potential[i] += potentialStep;
-      state.electronEnergy[i] += limited(electrons) - potentialStep;
-      state.holeEnergy[i] += -limited(holes) - potentialStep;
-    }
-    state.voltage += voltageStep;
-    residual = largest;
-    if (process.env.TRACE)
-      console.log(
-        "  newton",
-        iteration,
-        largest.toExponential(3),
-        "v",
-        (state.voltage * problem.thermalVoltage).toFixed(5),
-      );
-    if (largest < options.tolerance) return { status: "solved", iterations: iteration, residual };
+    residual = takeStep(problem, state, assembly.residual, voltageStep);
+    if (!(residual < Infinity)) return { status: "singular", iterations: iteration, residual: smallest };
+    if (residual < options.tolerance) return { status: "solved", iterations: iteration, residual };
+    if (residual < smallest) {
+      smallest = residual;
+      sinceSmallest = 0;
+    } else sinceSmallest += 1;
+    // Newton's steps no longer shrink: rounding where they are small, divergence where they are large.
+    if (sinceSmallest >= 3 && residual < roundingStep) return { status: "solved", iterations: iteration, residual };
+    if (sinceSmallest >= 5 && iteration > 8 && residual > 1e6) break;
   }
   return { status: "notConverged", iterations: options.iterations, residual };
+}
+
+/** Steps (in kT) that may be rounding: 10⁻⁵ of a density. */
+const roundingStep = 1e-5;
+
+/** Apply a step, limited; returns its largest unlimited change of ln(density), φ̃ or v. */
+function takeStep(problem: Problem, state: State, step: Float64Array, voltageStep: number): number {
+  const { potential, electronEnergy, holeEnergy } = state;
+  let largest = Math.abs(voltageStep);
+  for (let i = 0; i < problem.nodes; i++) {
+    const potentialStep = step[i * 3];
+    const electrons = potentialStep + step[i * 3 + 1];
+    const holes = -potentialStep - step[i * 3 + 2];
+    const size = Math.max(Math.abs(potentialStep), Math.abs(electrons), Math.abs(holes));
+    if (!(size <= largest)) largest = size;
+    potential[i] += potentialStep;
+    electronEnergy[i] += limited(electrons) - potentialStep;
+    holeEnergy[i] += -limited(holes) - potentialStep;
+  }
+  state.voltage += voltageStep;
+  return largest;
 }

@@ -19,7 +19,7 @@ import { harmonicSolver } from "../linearAlgebra/harmonicSolver.ts";
 import type { HarmonicRelaxation } from "../linearAlgebra/harmonicSystem.ts";
 import { type Assembly, assemble, createAssembly, type Drive } from "./assembly.ts";
 import { edgeFlux, fieldFactor, flux } from "./fluxes.ts";
-import { freezeIons, type IonGroup } from "./ions.ts";
+import { holdIons, type IonGroup } from "./ions.ts";
 import {
   addCorrection,
   type EdgeFluxes,
@@ -96,7 +96,7 @@ function addIons(
 
 /** Linearise about a solved state. */
 export function linearise(problem: Problem, solved: State, drive: Drive): Linearisation {
-  const follow = drive.frozenIonCharge === null;
+  const follow = drive.heldIons === null;
   const ionUnknowns = ([1, -1] as const)
     .filter((charge) => follow && problem.ions.some((group) => group.charge === charge))
     .map((charge, k) => ({ charge, unknown: 3 + k }));
@@ -114,7 +114,7 @@ export function linearise(problem: Problem, solved: State, drive: Drive): Linear
   const parts = target.smallSignal!;
   const state = copyState(solved);
   const relaxations: HarmonicRelaxation[] = [];
-  const held = { flux: drive.flux, frozenIonCharge: drive.frozenIonCharge ?? freezeIons(problem, state) };
+  const held = { flux: drive.flux, heldIons: drive.heldIons ?? holdIons(problem, state) };
   const fill = () => {
     relaxations.length = 0;
     assemble(problem, state, held, target, trapRelaxations(problem, target, relaxations));
