@@ -29,26 +29,36 @@ function logElectronDensity(layer: Layer, temperature: number): number {
   return logIntrinsic + Math.sign(doping) * aboveIntrinsic;
 }
 
-/** Charge of a layer in units of q per volume, with its Fermi level at a depth below the conduction band. */
-function chargeAt(depth: number, layer: Layer, thermal: number): number {
-  const electrons = layer.conductionStates * Math.exp(-depth / thermal);
-  const holes = layer.valenceStates * Math.exp((depth - layer.gap) / thermal);
-  const filled = 1 / (1 + Math.exp((depth - layer.trapDepth) / thermal));
-  const empty = 1 / (1 + Math.exp((layer.trapDepth - depth) / thermal));
-  const density = layer.traps?.density ?? 0;
-  const trapped = layer.traps?.kind === "acceptor" ? -density * filled : density * empty;
-  return holes - electrons + netDoping(layer) + trapped;
+/** ln(e^a + e^b). */
+function logSum(a: number, b: number): number {
+  const larger = Math.max(a, b);
+  return larger === -Infinity ? -Infinity : larger + Math.log1p(Math.exp(-Math.abs(a - b)));
+}
+
+/**
+ * ln of positive over negative charge of a layer with traps, with its Fermi level at a depth below the conduction band:
+ * in logarithms, so that charges of any smallness count.
+ */
+function chargeImbalance(depth: number, layer: Layer, thermal: number): number {
+  const doping = netDoping(layer);
+  let positive = logSum(Math.log(layer.valenceStates) + (depth - layer.gap) / thermal, Math.log(Math.max(doping, 0)));
+  let negative = logSum(Math.log(layer.conductionStates) - depth / thermal, Math.log(Math.max(-doping, 0)));
+  if (layer.traps) {
+    const above = (depth - layer.trapDepth) / thermal;
+    const density = Math.log(layer.traps.density);
+    if (layer.traps.kind === "donor") positive = logSum(positive, density - logSum(0, -above));
+    else negative = logSum(negative, density - logSum(0, above));
+  }
+  return positive - negative;
 }
 
 /** Depth of the Fermi level below the conduction band in V where doping, carriers and static trap charge balance. */
 export function neutralFermiDepth(layer: Layer, temperature: number): number {
   const thermal = thermalVoltage(temperature);
-  const withoutTraps = (Math.log(layer.conductionStates) - logElectronDensity(layer, temperature)) * thermal;
-  if (!layer.traps) return withoutTraps;
-  const charge = (depth: number) => chargeAt(depth, layer, thermal);
+  if (!layer.traps) return (Math.log(layer.conductionStates) - logElectronDensity(layer, temperature)) * thermal;
   // Far beyond either band edge the carriers outweigh any doping or trap density that a document may hold.
   const margin = 100 * thermal;
-  return rootBetween(charge, -margin, layer.gap + margin);
+  return rootBetween((depth) => chargeImbalance(depth, layer, thermal), -margin, layer.gap + margin);
 }
 
 /** Work function of a contact in V below vacuum; "ohmic" is the Fermi level of the neutral adjacent layer. */

@@ -2,11 +2,11 @@
 import { solveDiffusion } from "./closedForm/diffusion.ts";
 import { solveGaertner } from "./closedForm/gaertner.ts";
 import { solveTransit } from "./closedForm/transit.ts";
+import { solveDriftDiffusion } from "./driftDiffusion/solve.ts";
 import { solveLayeredDiffusion } from "./layeredDiffusion/layeredDiffusion.ts";
 import type { ResultDocument, SpectrumResult, Warning } from "./result.ts";
 import { resultFormatName } from "./result.ts";
 import { type Device, deviceOf } from "./scenario/device.ts";
-import { refuse } from "./scenario/errors.ts";
 import { hashOf } from "./scenario/hash.ts";
 import { parseScenario } from "./scenario/resolve.ts";
 import type { ResolvedScenario } from "./scenario/resolved.ts";
@@ -30,11 +30,12 @@ export interface SolvedSpectra {
 type ModelSolver = (scenario: ResolvedScenario, device: Device, options: SolveOptions) => SolvedSpectra;
 
 /** Where a model is plugged in. */
-const models: Partial<Record<ModelKind, ModelSolver>> = {
+const models: Record<ModelKind, ModelSolver> = {
   transit: solveTransit,
   gaertner: solveGaertner,
   diffusion: solveDiffusion,
   diffusionLayers: solveLayeredDiffusion,
+  driftDiffusion: solveDriftDiffusion,
 };
 
 /**
@@ -44,12 +45,6 @@ const models: Partial<Record<ModelKind, ModelSolver>> = {
  */
 export function solveSpectra(scenario: ResolvedScenario, options: SolveOptions = {}): SolvedSpectra {
   const solver = models[scenario.model.kind];
-  if (!solver)
-    refuse(
-      "model.kind",
-      `is "${scenario.model.kind}", which this solver does not have`,
-      Object.keys(models).join(", "),
-    );
   const device = deviceOf(scenario);
   const { spectra, warnings } = solver(scenario, device, options);
   return { spectra, warnings: [...warningsOf(scenario, device), ...warnings] };

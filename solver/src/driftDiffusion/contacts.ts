@@ -10,8 +10,10 @@
  * Each contact's Fermi level is the zero of the energies on its side, so φ = −Φ_c there at every voltage and the flows
  * into the contact are S_n n₀ (e^{u_n} − 1) and S_p p₀ (e^{−u_p} − 1).
  */
-import type { Contact, Device, Layer } from "../scenario/device.ts";
-import { boltzmann, electronLevel, holeLevel, neutralWorkFunction } from "./statistics.ts";
+import { workFunctionOf } from "../equilibrium.ts";
+import type { Device } from "../scenario/device.ts";
+import type { Side } from "../scenario/schema.ts";
+import { boltzmann, electronLevel, holeLevel } from "./statistics.ts";
 
 export interface ContactTable {
   /** Work function, V. */
@@ -36,9 +38,10 @@ export class ContactRefusal extends Error {
   }
 }
 
-export function contactTable(contact: Contact, layer: Layer, thermalVoltage: number): ContactTable {
-  const workFunction =
-    contact.workFunction === "ohmic" ? neutralWorkFunction(layer, thermalVoltage) : contact.workFunction;
+export function contactTable(device: Device, side: Side, thermalVoltage: number): ContactTable {
+  const contact = device[side];
+  const layer = side === "front" ? device.layers[0] : device.layers[device.layers.length - 1];
+  const workFunction = workFunctionOf(device, side);
   const potential = -workFunction / thermalVoltage;
   return {
     workFunction,

@@ -5,17 +5,20 @@
  *
  * Ions follow: their number couples all potentials of a group, one border unknown each (ions.ts).
  */
+import { neutralFermiDepth } from "../equilibrium.ts";
 import { RealBlockTridiagonal } from "../linearAlgebra/realBlockTridiagonal.ts";
 import type { HeldIons } from "./ions.ts";
 import { balanceIons, type NewtonOutcome, solveDense } from "./newton.ts";
 import type { Problem } from "./problem.ts";
 import type { State } from "./state.ts";
-import { boltzmann, neutralWorkFunction } from "./statistics.ts";
+import { boltzmann } from "./statistics.ts";
 
 /** Every layer neutral, Fermi level flat. */
 export function neutralState(problem: Problem): State {
   const { nodes, thermalVoltage, device, edgeLayer } = problem;
-  const neutral = device.layers.map((layer) => -neutralWorkFunction(layer, thermalVoltage) / thermalVoltage);
+  const neutral = device.layers.map(
+    (layer) => -(layer.affinity + neutralFermiDepth(layer, device.temperature)) / thermalVoltage,
+  );
   const potential = new Float64Array(nodes);
   for (let i = 0; i < nodes; i++)
     potential[i] = 0.5 * (neutral[edgeLayer[Math.max(i - 1, 0)]] + neutral[edgeLayer[Math.min(i, nodes - 2)]]);

@@ -14,6 +14,8 @@
  * in Handbook of Optoelectronic Device Modeling and Simulation (CRC 2017), ch. 50.
  */
 
+import { boltzmann } from "./statistics.ts";
+
 /** Result of `edgeFlux`: [P − M, P, M]. */
 export const flux = new Float64Array(3);
 
@@ -40,9 +42,8 @@ export function edgeFlux(
   factor: number,
   energyStep: number,
 ): void {
-  let exponent = meanLogDensity - 0.5 * Math.abs(potentialStep) + 0.5 * Math.abs(energyStep);
-  exponent = exponent < -600 ? -600 : exponent > 140 ? 140 : exponent;
-  const larger = conductance * factor * Math.exp(exponent);
+  const exponent = meanLogDensity - 0.5 * Math.abs(potentialStep) + 0.5 * Math.abs(energyStep);
+  const larger = conductance * factor * boltzmann(exponent);
   const decay = Math.expm1(-Math.abs(energyStep));
   const smaller = larger * (1 + decay);
   if (energyStep >= 0) {

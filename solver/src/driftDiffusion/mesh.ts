@@ -20,12 +20,11 @@ export interface Mesh {
   edgeLayer: Int32Array;
 }
 
-const env = (k: string, d: number) => (process.env[k] ? +process.env[k]! : d);
-const growth = env("G", 0.07);
-const cellsAcrossLayer = env("C", 90);
-const fewestCells = env("N", 420);
+const growth = 0.07;
+const cellsAcrossLayer = 90;
+const fewestCells = 420;
 const mostCells = 2000;
-const fractionOfScreening = env("F", 0.02);
+const fractionOfScreening = 0.02;
 
 /** ∫dx/h from a boundary to distance s. */
 function cellsWithin(s: number, atBoundary: number, largest: number): number {

@@ -13,9 +13,9 @@
  * | ε V_T/(q h) | permittivity over spacing, as a number of charges per kT | m⁻² | edges |
  */
 import { elementaryCharge, thermalVoltage as thermalVoltageAt, vacuumPermittivity } from "../constants.ts";
+import { type Interval, lightThrough, type Wavelength } from "../light/generation.ts";
 import type { Device } from "../scenario/device.ts";
 import { type ContactTable, contactTable, refuseIsolatedCarriers } from "./contacts.ts";
-import { generationPerPhoton } from "./generation.ts";
 import { type IonGroup, ionGroups } from "./ions.ts";
 import { buildMesh } from "./mesh.ts";
 import { type InterfaceTable, interfaceTable, type LayerTable, layerTable } from "./recombination.ts";
@@ -45,17 +45,29 @@ export interface Problem {
   modulationGeneration: Float64Array;
 }
 
-/** Pieces of control volumes in order of depth, with the depths of their limits. */
-function pieces(x: Float64Array, edgeLayer: Int32Array) {
+interface Pieces {
+  node: Int32Array;
+  layer: Int32Array;
+  width: Float64Array;
+  /** Depths inside the layer, for the light. */
+  intervals: Interval[];
+}
+
+/** Pieces of control volumes in order of depth. */
+function pieces(device: Device, x: Float64Array, edgeLayer: Int32Array): Pieces {
+  const starts: number[] = [];
+  let total = 0;
+  for (const layer of device.layers) {
+    starts.push(total);
+    total += layer.thickness;
+  }
   const node: number[] = [];
-  const layer: number[] = [];
-  const width: number[] = [];
-  const limits: number[] = [0];
-  const add = (i: number, k: number, to: number) => {
+  const intervals: Interval[] = [];
+  let from = 0;
+  const add = (i: number, layer: number, to: number) => {
     node.push(i);
-    layer.push(k);
-    width.push(to - limits[limits.length - 1]);
-    limits.push(to);
+    intervals.push({ layer, from: from - starts[layer], to: to - starts[layer] });
+    from = to;
   };
   for (let i = 0; i < x.length; i++) {
     const end = i === x.length - 1 ? x[i] : 0.5 * (x[i] + x[i + 1]);
@@ -68,9 +80,9 @@ function pieces(x: Float64Array, edgeLayer: Int32Array) {
   }
   return {
     node: Int32Array.from(node),
-    layer: Int32Array.from(layer),
-    width: Float64Array.from(width),
-    limits: Float64Array.from(limits),
+    layer: Int32Array.from(intervals, ({ layer }) => layer),
+    width: Float64Array.from(intervals, (interval) => interval.to - interval.from),
+    intervals,
   };
 }
 
@@ -96,8 +108,9 @@ export function prepareProblem(device: Device, nodes: number | null): Problem {
     holeConductance[e] = (layer.holeMobility * thermalVoltage) / h;
     permittivity[e] = (layer.relativePermittivity * vacuumPermittivity * thermalVoltage) / (elementaryCharge * h);
   }
-  const part = pieces(x, edgeLayer);
-  const perNode = (perPiece: Float64Array) => {
+  const part = pieces(device, x, edgeLayer);
+  const generation = (wavelength: Wavelength) => {
+    const perPiece = lightThrough(device, wavelength).generationOver(part.intervals);
     const sum = new Float64Array(x.length);
     for (let k = 0; k < perPiece.length; k++) sum[part.node[k]] += perPiece[k];
     return sum;
@@ -118,10 +131,10 @@ export function prepareProblem(device: Device, nodes: number | null): Problem {
     pieceWidth: part.width,
     layers: layerTable(device, thermalVoltage),
     interfaces: interfaceTable(device, edgeLayer, thermalVoltage),
-    front: contactTable(device.front, device.layers[0], thermalVoltage),
-    back: contactTable(device.back, device.layers[device.layers.length - 1], thermalVoltage),
+    front: contactTable(device, "front", thermalVoltage),
+    back: contactTable(device, "back", thermalVoltage),
     ions: ionGroups(device, x, edgeLayer, thermalVoltage),
-    biasGeneration: perNode(generationPerPhoton(device, part.limits, part.layer, "bias")),
-    modulationGeneration: perNode(generationPerPhoton(device, part.limits, part.layer, "modulation")),
+    biasGeneration: generation("bias"),
+    modulationGeneration: generation("modulation"),
   };
 }

@@ -1,11 +1,12 @@
 /** Spectra of a scenario by the full transport model: one steady state and one linearisation per operating point. */
-import { elementaryCharge } from "../constants.ts";
-import { type Failure, type SpectrumResult, unitOf, type UnsolvedSpectrum, type Warning } from "../result.ts";
-import { type Circuit, type Device, fluxToSI } from "../scenario/device.ts";
+import { atTerminals } from "../circuit.ts";
+import { complex } from "../numerics/complex.ts";
+import { type Failure, type SpectrumResult, type UnsolvedSpectrum, unitOf, type Warning } from "../result.ts";
+import { currentFromSI, type Device, fluxToSI, resistanceFromSI } from "../scenario/device.ts";
 import { refuse } from "../scenario/errors.ts";
 import { frequenciesOf } from "../scenario/frequencies.ts";
 import type { ResolvedScenario, ResolvedSpectrum } from "../scenario/resolved.ts";
-import type { Bias, Technique } from "../scenario/schema.ts";
+import type { Bias } from "../scenario/schema.ts";
 import type { SolvedSpectra, SolveOptions } from "../solve.ts";
 import { ContactRefusal } from "./contacts.ts";
 import { type SteadyState, steadyState } from "./continuation.ts";
@@ -154,16 +155,27 @@ export function solveDriftDiffusion(
       for (const warning of stackWarnings(point))
         if (!warnings.some(({ path }) => path === warning.path)) warnings.push(warning);
     }
-    if (response.status !== "solved") return failed(response.status, "small signal", "the linear response has no solution");
+    if (response.status !== "solved")
+      return failed(response.status, "small signal", "the linear response has no solution");
     options.onProgress?.((k + 1) / scenario.spectra.length);
-    const { re, im } = terminalSpectrum(technique, device.circuit, response);
+    const unit = technique === "imps" ? 1 : resistanceFromSI(1);
+    const re: number[] = [];
+    const im: number[] = [];
+    for (let f = 0; f < frequencies.length; f++) {
+      const outside = atTerminals(technique, device.circuit, frequencies[f], {
+        photocurrent: complex(response.yieldReal[f], response.yieldImaginary[f]),
+        admittance: complex(response.admittanceReal[f], response.admittanceImaginary[f]),
+      });
+      re.push(outside.re * unit);
+      im.push(outside.im * unit);
+    }
     if (![...re, ...im].every(Number.isFinite))
       return failed("singular", "small signal", "the response is infinite at a frequency");
     const [light, voltage] = response.spread;
     return {
       status: "solved",
       ...head,
-      operatingPoint: { voltageV: point.voltage, currentMAPerCm2: point.current / 10 },
+      operatingPoint: { voltageV: point.voltage, currentMAPerCm2: currentFromSI(point.current) },
       currentSpread: technique === "imps" ? light : technique === "impedance" ? voltage : Math.max(light, voltage),
       frequencyHz: Array.from(frequencies),
       re,
