@@ -1,0 +1,57 @@
+/**
+ * Who may do what: one row a route (its id in `app/routes.ts`, which is its file without the extension), one entry a
+ * method. A route without a row, or a row without a route, fails the test beside this file.
+ *
+ * To add a route: add its row here. If its path has a parameter besides `labId`, name in `parameters` where an object
+ * of a given lab is found.
+ */
+import type { Visitor } from "../../support/visitor";
+
+/** The least that is needed. `everybody` includes visitors; the roles are roles in the lab of the address. */
+export type Needed = "everybody" | "signedIn" | "viewer" | "researcher" | "owner";
+
+export interface Access {
+  needed: Needed;
+  /** What is sent; the empty form where absent. It need not be valid: a 400 shows that one was let in. */
+  form?: Record<string, string>;
+  /** The answer for those who may, where it is one that otherwise means refusal. */
+  answer?: number;
+  /** The query string to ask with. */
+  query?: string;
+}
+
+/** `GET` is the page or the data, `POST` stands for every unsafe method. */
+export type Row = Partial<Record<"GET" | "POST", Access>>;
+
+const everybody: Access = { needed: "everybody" };
+const signedIn: Access = { needed: "signedIn" };
+const viewer: Access = { needed: "viewer" };
+
+export const matrix: Record<string, Row> = {
+  "routes/public/landing": { GET: everybody },
+  "routes/public/notFound": { GET: { needed: "everybody", answer: 404 }, POST: { needed: "everybody", answer: 404 } },
+  "routes/public/mailbox": { GET: everybody },
+  "routes/public/demo": { POST: { needed: "everybody", form: { role: "viewer" } } },
+  "routes/public/theme": { POST: everybody },
+  "routes/account/signIn": { GET: everybody, POST: everybody },
+  "routes/account/signInCode": { GET: everybody, POST: everybody },
+  "routes/account/signOut": { POST: everybody },
+  "routes/account/account": { GET: signedIn, POST: signedIn },
+  "routes/lab/layout": { GET: viewer },
+  "routes/lab/index": { GET: viewer },
+  "routes/lab/people": { GET: viewer },
+  "routes/lab/activity": { GET: viewer },
+};
+
+export interface LabWorld {
+  id: string;
+  /** Signed in as owner of this lab; may make what the seed lacks. */
+  owner: Visitor;
+  /** The first column of the first row; `?` is the lab's id. */
+  select(sql: string): Promise<string | undefined>;
+}
+
+/** Where the value of a path's parameter comes from. */
+export const parameters: Record<string, (lab: LabWorld) => Promise<string | undefined>> = {
+  "*": async () => "no/such/page",
+};
