@@ -4,6 +4,7 @@ const alias = { "~": new URL("./app", import.meta.url).pathname };
 
 export default defineConfig({
   test: {
+    reporters: ["default", "./tests/support/closingLine.ts"],
     projects: [
       { resolve: { alias }, test: { name: "solver", include: ["tests/solver/**/*.test.ts"], environment: "node" } },
       {
