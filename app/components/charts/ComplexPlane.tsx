@@ -20,6 +20,7 @@ interface ComplexPlaneProps
     | "cursor"
     | "onCursor"
     | "dragging"
+    | "tools"
     | "below"
     | "above"
   > {

@@ -16,6 +16,7 @@ interface OverFrequencyProps
     | "cursor"
     | "onCursor"
     | "dragging"
+    | "tools"
     | "below"
     | "above"
   > {

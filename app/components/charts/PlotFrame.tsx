@@ -57,6 +57,8 @@ export interface PlotFrameProps {
   onCursor: (cursor: Cursor | null) => void;
   /** While something is dragged lines follow at once instead of gliding. */
   dragging?: boolean;
+  /** Further buttons beside zoom, table and files. */
+  tools?: ReactNode;
   /** Beneath the curves: washes, bands. */
   below?: (geometry: Geometry) => ReactNode;
   /** Above the curves: numbered arcs, labels. */
@@ -134,7 +136,9 @@ export function PlotFrame(props: PlotFrameProps) {
           onTable={() => setTableShown(!tableShown)}
           zoomedIn={zoomView !== null}
           onZoom={zoom}
-        />
+        >
+          {props.tools}
+        </Toolbar>
         {tableShown ? (
           <DataTable
             title={title}

@@ -1,4 +1,4 @@
-import type { RefObject } from "react";
+import type { ReactNode, RefObject } from "react";
 import { type Column, csvOf } from "./columns";
 import { bitmapOf, download, standaloneSvg } from "./exportFigure";
 import type { Series } from "./series";
@@ -12,14 +12,24 @@ interface ToolbarProps {
   onTable: () => void;
   zoomedIn: boolean;
   onZoom: (factor: number | null) => void;
+  /** What this plot offers besides. */
+  children?: ReactNode;
 }
-
-const tool = "min-h-6 min-w-6 rounded px-1 text-ink-soft hover:text-tide focus-visible:text-tide";
 
 const fileNameOf = (title: string) => title.replace(/[^\p{L}\p{N}]+/gu, "-").replace(/^-|-$/g, "");
 
 /** Zoom, the table and the files of one plot. */
-export function Toolbar({ title, series, columns, plot, tableShown, onTable, zoomedIn, onZoom }: ToolbarProps) {
+export function Toolbar({
+  title,
+  series,
+  columns,
+  plot,
+  tableShown,
+  onTable,
+  zoomedIn,
+  onZoom,
+  children,
+}: ToolbarProps) {
   const name = fileNameOf(title);
   const saveSvg = () => {
     if (plot.current) download(`${name}.svg`, new Blob([standaloneSvg(plot.current)], { type: "image/svg+xml" }));
@@ -33,25 +43,26 @@ export function Toolbar({ title, series, columns, plot, tableShown, onTable, zoo
     <div className="absolute top-0 right-0 z-10 flex text-small print:hidden">
       {!tableShown && (
         <>
+          {children}
           {zoomedIn && (
-            <button type="button" className={tool} onClick={() => onZoom(null)}>
+            <button type="button" className="plot-tool" onClick={() => onZoom(null)}>
               Whole
             </button>
           )}
-          <button type="button" className={tool} aria-label={`Zoom in: ${title}`} onClick={() => onZoom(2)}>
+          <button type="button" className="plot-tool" aria-label={`Zoom in: ${title}`} onClick={() => onZoom(2)}>
             +
           </button>
-          <button type="button" className={tool} aria-label={`Zoom out: ${title}`} onClick={() => onZoom(0.5)}>
+          <button type="button" className="plot-tool" aria-label={`Zoom out: ${title}`} onClick={() => onZoom(0.5)}>
             −
           </button>
         </>
       )}
-      <button type="button" className={tool} aria-pressed={tableShown} onClick={onTable}>
+      <button type="button" className="plot-tool" aria-pressed={tableShown} onClick={onTable}>
         Table
       </button>
       <button
         type="button"
-        className={tool}
+        className="plot-tool"
         onClick={() =>
           download(`${name}.csv`, new Blob([csvOf(title, series, columns)], { type: "text/csv;charset=utf-8" }))
         }
@@ -60,10 +71,10 @@ export function Toolbar({ title, series, columns, plot, tableShown, onTable, zoo
       </button>
       {!tableShown && (
         <>
-          <button type="button" className={tool} onClick={saveSvg}>
+          <button type="button" className="plot-tool" onClick={saveSvg}>
             SVG
           </button>
-          <button type="button" className={tool} onClick={savePng}>
+          <button type="button" className="plot-tool" onClick={savePng}>
             PNG
           </button>
         </>

@@ -16,6 +16,7 @@ interface XYPlotProps
     | "cursor"
     | "onCursor"
     | "dragging"
+    | "tools"
     | "below"
     | "above"
   > {

@@ -1,0 +1,29 @@
+/** What a pane of the strip under the spectra is given, and what it has to be. */
+import type { ResultDocument, ScenarioDocument, SpectrumResult } from "@demilune/solver";
+import type { ReactNode } from "react";
+import type { LinkedCursor } from "~/components/charts/useLinkedCursor";
+
+export interface PaneContext {
+  document: ScenarioDocument;
+  /** The latest whole result; null before the first. */
+  result: ResultDocument | null;
+  /** The spectrum on screen. */
+  spectrum: SpectrumResult | undefined;
+  /** Index of the spectrum on screen in the document's list. */
+  shown: number;
+  /** Names of the document's spectra. */
+  names: readonly string[];
+  linked: LinkedCursor;
+  /** A value is being dragged: what is slow may wait. */
+  dragging: boolean;
+}
+
+export interface Pane {
+  id: string;
+  label: string;
+  /** Words behind the label, such as a count. */
+  addition?: (context: PaneContext) => string | undefined;
+  /** Whether the pane has anything to say about this document. */
+  available?: (context: PaneContext) => boolean;
+  Content: (props: PaneContext) => ReactNode;
+}
