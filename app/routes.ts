@@ -16,5 +16,7 @@ export default [
     index("routes/lab/index.tsx"),
     route("people", "routes/lab/people.tsx"),
     route("activity", "routes/lab/activity.tsx"),
+    route("scenarios/:scenarioId", "routes/lab/scenarios/bench.tsx"),
+    route("scenarios/:scenarioId/prediction.csv", "routes/lab/scenarios/predictionCsv.ts"),
   ]),
 ] satisfies RouteConfig;

@@ -20,3 +20,12 @@ export function withField<Holder>(holder: Holder, keys: Keys, value: unknown): H
   const emptied = inner === undefined && Object.keys(copy).length === 0;
   return (emptied ? undefined : copy) as Holder;
 }
+
+/** How many fields two documents differ in. */
+export function countDifferences(one: unknown, other: unknown): number {
+  if (one === other) return 0;
+  const isObject = (value: unknown): value is Record<string, unknown> => typeof value === "object" && value !== null;
+  if (!isObject(one) || !isObject(other)) return 1;
+  const names = new Set([...Object.keys(one), ...Object.keys(other)]);
+  return [...names].reduce((sum, name) => sum + countDifferences(one[name], other[name]), 0);
+}
