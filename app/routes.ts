@@ -18,5 +18,11 @@ export default [
     route("activity", "routes/lab/activity.tsx"),
     route("scenarios/:scenarioId", "routes/lab/scenarios/bench.tsx"),
     route("scenarios/:scenarioId/prediction.csv", "routes/lab/scenarios/predictionCsv.ts"),
+    route("measurements", "routes/lab/measurements/list.tsx"),
+    route("measurements/import", "routes/lab/measurements/import.tsx"),
+    route("measurements/:measurementId", "routes/lab/measurements/measurement.tsx"),
+    route("measurements/:measurementId/raw", "routes/lab/measurements/raw.ts"),
+    route("samples", "routes/lab/samples/list.tsx"),
+    route("samples/:sampleId", "routes/lab/samples/sample.tsx"),
   ]),
 ] satisfies RouteConfig;

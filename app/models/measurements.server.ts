@@ -89,7 +89,14 @@ export interface MeasurementList {
 
 /** A page of the lab's measurements; the filter looks at names of measurements and samples. */
 export async function listMeasurements(labId: string, options: MeasurementList = {}) {
-  const { archived = false, filter = "", technique, sort = "updated", descending = sort === "updated", page = 1 } = options;
+  const {
+    archived = false,
+    filter = "",
+    technique,
+    sort = "updated",
+    descending = sort === "updated",
+    page = 1,
+  } = options;
   const pattern = `%${filter.replace(/[\\%_]/g, (sign) => `\\${sign}`)}%`;
   const where = and(
     eq(measurements.labId, labId),
@@ -117,7 +124,11 @@ export async function listMeasurements(labId: string, options: MeasurementList =
       .where(where)
       .get(),
   ]);
-  return { measurements: rows.map(ofRow), total: total?.total ?? 0, pages: Math.max(1, Math.ceil((total?.total ?? 0) / measurementsPerPage)) };
+  return {
+    measurements: rows.map(ofRow),
+    total: total?.total ?? 0,
+    pages: Math.max(1, Math.ceil((total?.total ?? 0) / measurementsPerPage)),
+  };
 }
 
 /** How many measurements the lab has outside and inside the archive. */
@@ -224,10 +235,7 @@ export async function importMeasurements(
       database()
         .insert(measurementPoints)
         .values({ measurementId: id, data: packPoints(pointsOf(spectrum)) }),
-      recordActivity(
-        { labId, userId, kind: "imported", objectKind: "measurement", objectId: id, text: name },
-        at,
-      ),
+      recordActivity({ labId, userId, kind: "imported", objectKind: "measurement", objectId: id, text: name }, at),
     ];
   });
   await write(...raw.queries, ...(made?.queries ?? []), ...queries);
@@ -263,7 +271,14 @@ export async function replaceReading(
       .set({ data: packPoints(pointsOf(spectrum)) })
       .where(eq(measurementPoints.measurementId, measurementId)),
     recordActivity(
-      { labId, userId, kind: "imported again", objectKind: "measurement", objectId: measurementId, text: measurement.name },
+      {
+        labId,
+        userId,
+        kind: "imported again",
+        objectKind: "measurement",
+        objectId: measurementId,
+        text: measurement.name,
+      },
       at,
     ),
   );

@@ -33,7 +33,13 @@ export async function listOverlays(labId: string, scenarioId: string): Promise<O
     .innerJoin(measurements, eq(measurements.id, overlays.measurementId))
     .where(and(eq(scenarios.labId, labId), eq(measurements.labId, labId), eq(scenarios.id, scenarioId)))
     .orderBy(asc(overlays.createdAt), asc(overlays.measurementId));
-  return withPoints(labId, await findMeasurements(labId, rows.map(({ id }) => id)));
+  return withPoints(
+    labId,
+    await findMeasurements(
+      labId,
+      rows.map(({ id }) => id),
+    ),
+  );
 }
 
 /** These measurements of the lab with their points, for a share link. */
@@ -65,7 +71,11 @@ async function bothInLab(labId: string, scenarioId: string, measurementId: strin
 }
 
 /** Lays a measurement over a scenario. False where the lab lacks one of the two. */
-export async function attachMeasurement({ labId, userId }: Actor, scenarioId: string, measurementId: string): Promise<boolean> {
+export async function attachMeasurement(
+  { labId, userId }: Actor,
+  scenarioId: string,
+  measurementId: string,
+): Promise<boolean> {
   if (!(await bothInLab(labId, scenarioId, measurementId))) return false;
   await write(
     database()

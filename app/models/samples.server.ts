@@ -54,7 +54,11 @@ export async function countArchivedSamples(labId: string): Promise<number> {
 }
 
 /** The queries that make a sample; give them to `write()` together with what refers to it. */
-export function newSample({ labId, userId }: Actor, description: Partial<SampleDescription> & { name: string }, at: Date) {
+export function newSample(
+  { labId, userId }: Actor,
+  description: Partial<SampleDescription> & { name: string },
+  at: Date,
+) {
   const id = newId(at.getTime());
   return {
     id,
@@ -101,7 +105,11 @@ export async function updateSample(
 }
 
 /** Puts a sample into the archive or takes it out; its measurements stay. False where the lab has no such sample. */
-export async function setSampleArchived({ labId, userId }: Actor, sampleId: string, archived: boolean): Promise<boolean> {
+export async function setSampleArchived(
+  { labId, userId }: Actor,
+  sampleId: string,
+  archived: boolean,
+): Promise<boolean> {
   const sample = await findSample(labId, sampleId);
   if (!sample) return false;
   const at = new Date();
@@ -128,7 +136,12 @@ export async function setSampleArchived({ labId, userId }: Actor, sampleId: stri
 /** Ids of a sample's measurements, the archive's too, for pages that list them. */
 export async function listMeasurementsOfSample(labId: string, sampleId: string) {
   return database()
-    .select({ id: measurements.id, name: measurements.name, technique: measurements.technique, archivedAt: measurements.archivedAt })
+    .select({
+      id: measurements.id,
+      name: measurements.name,
+      technique: measurements.technique,
+      archivedAt: measurements.archivedAt,
+    })
     .from(measurements)
     .where(and(eq(measurements.labId, labId), eq(measurements.sampleId, sampleId)))
     .orderBy(asc(sql`lower(${measurements.name})`));

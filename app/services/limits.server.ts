@@ -8,4 +8,8 @@ export const limits = {
   askCode: { address: [5, 3600], client: [10, 600], everybody: [200, 3600] },
   /** Codes tried; per challenge the row of the challenge counts. */
   checkCode: { challenge: 5, address: [15, 3600], client: [30, 600] },
+  /** Measurement files of one person. */
+  upload: [120, 3600],
+  /** Share links opened: from one address, and with a token that is none. */
+  shareLink: { client: [60, 60], unknown: [20, 60] },
 } as const;

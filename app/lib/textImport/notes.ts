@@ -146,14 +146,14 @@ export function readNotes(lines: readonly string[], numbers: readonly number[], 
     keep(
       notes,
       "modulatedFluxPerCm2S",
-      flux(text, String.raw`modulated (?:photon )?flux|flux (?:modulation|amplitude)|δΦ`, mark),
+      flux(text, "modulated (?:photon )?flux|flux (?:modulation|amplitude)|δΦ", mark),
       line,
     );
     if (!/modulated|amplitude/i.test(text))
       keep(notes, "fluxPerCm2S", flux(text, String.raw`\bflux\b|fluxPerCm2S|photonenfluss|\bΦ`, mark), line);
     keep(notes, "temperatureK", temperature(text, mark), line);
     const wavelength =
-      match(text, String.raw`wavelength|wellenlänge|LED|laser|λ`, "nm", mark)?.value ??
+      match(text, "wavelength|wellenlänge|LED|laser|λ", "nm", mark)?.value ??
       Number(/\b(\d{3,4})\s*nm\b/.exec(text)?.[1]);
     keep(notes, "wavelengthNm", positive(wavelength, 1e5) ? wavelength : undefined, line);
     const depth = match(text, String.raw`modulation(?:\s+depth)?`, "%", mark)?.value;

@@ -129,7 +129,7 @@ function withPrefix(prefix: string, rest: string): readonly [number, Dimensions]
 const token = /\s*(?:(\/)|(\()|(\))|([A-Za-zµΩ%]+|1)(-?\d+)?)/y;
 const noDimensions: Dimensions = [0, 0, 0, 0];
 
-/** Product and quotient of symbols; after a slash one factor (or a bracket) is divided by. */
+/** Product and quotient of symbols; everything behind a slash is below it, as the trade writes cm²/Vs. */
 function product(
   text: string,
   position: { at: number },
@@ -139,17 +139,20 @@ function product(
   let dimensions = noDimensions;
   let sign = 1;
   let seen = false;
+  let dangling = false;
   for (;;) {
     token.lastIndex = position.at;
     const found = token.exec(text);
     if (!found)
-      return seen && sign === 1 && text.slice(position.at).trim() === "" && depth === 0 ? { factor, dimensions } : null;
+      return seen && !dangling && text.slice(position.at).trim() === "" && depth === 0 ? { factor, dimensions } : null;
     position.at = token.lastIndex;
     if (found[1]) {
       sign = -1;
+      dangling = true;
       continue;
     }
     if (found[3]) return depth > 0 && seen ? { factor, dimensions } : null;
+    dangling = false;
     let part: { factor: number; dimensions: Dimensions } | null;
     let exponent = sign;
     if (found[2]) part = depth < 4 ? product(text, position, depth + 1) : null;
@@ -167,12 +170,11 @@ function product(
       dimensions[2] + exponent * added[2],
       dimensions[3] + exponent * added[3],
     ];
-    sign = 1;
     seen = true;
   }
 }
 
-/** A unit, or null where the text is none. "V/W cm2" divides by W only: what stands after the slash is one factor. */
+/** A unit, or null where the text is none. */
 export function parseUnit(text: string): Unit | null {
   const plain = plainUnit(text);
   if (plain === "" || plain.length > 40) return null;

@@ -27,6 +27,7 @@ export default function LabLayout({ loaderData: { lab, role } }: Route.Component
           {lab.name}
         </NavigationLink>
         <nav aria-label="Lab" className="flex flex-wrap gap-x-5">
+          <NavigationLink to={href("/lab/:labId/measurements", { labId })}>Measurements</NavigationLink>
           <NavigationLink to={href("/lab/:labId/people", { labId })}>People</NavigationLink>
           <NavigationLink to={href("/lab/:labId/activity", { labId })}>Activity</NavigationLink>
         </nav>
