@@ -26,6 +26,7 @@ export type Row = Partial<Record<"GET" | "POST", Access>>;
 const everybody: Access = { needed: "everybody" };
 const signedIn: Access = { needed: "signedIn" };
 const viewer: Access = { needed: "viewer" };
+const researcher: Access = { needed: "researcher" };
 
 export const matrix: Record<string, Row> = {
   "routes/public/landing": { GET: everybody },
@@ -41,6 +42,12 @@ export const matrix: Record<string, Row> = {
   "routes/lab/index": { GET: viewer },
   "routes/lab/people": { GET: viewer },
   "routes/lab/activity": { GET: viewer },
+  "routes/lab/measurements/list": { GET: viewer },
+  "routes/lab/measurements/import": { GET: researcher, POST: researcher },
+  "routes/lab/measurements/measurement": { GET: viewer, POST: researcher },
+  "routes/lab/measurements/raw": { GET: viewer },
+  "routes/lab/samples/list": { GET: viewer, POST: researcher },
+  "routes/lab/samples/sample": { GET: viewer, POST: researcher },
 };
 
 export interface LabWorld {
@@ -51,7 +58,29 @@ export interface LabWorld {
   select(sql: string): Promise<string | undefined>;
 }
 
+/** A measurement of the lab, imported where it has none. */
+async function measurementOf(lab: LabWorld): Promise<string | undefined> {
+  const find = () => lab.select("SELECT id FROM measurements WHERE lab_id = ?");
+  const kept = await find();
+  if (kept) return kept;
+  const pasted = "frequencyHz,re,im\n1,0.8,-0.01\n10,0.7,-0.1\n100,0.1,-0.2\n1000,0.01,-0.05\n";
+  const form = { intent: "store", pasted, "name-0": "Matrix", sampleName: "Matrix sample" };
+  await lab.owner.post(`/lab/${lab.id}/measurements/import`, form);
+  return find();
+}
+
+/** A sample of the lab; an import brings one along. */
+async function sampleOf(lab: LabWorld): Promise<string | undefined> {
+  const find = () => lab.select("SELECT id FROM samples WHERE lab_id = ?");
+  const kept = await find();
+  if (kept) return kept;
+  await lab.owner.post(`/lab/${lab.id}/samples`, { name: "Matrix sample" });
+  return find();
+}
+
 /** Where the value of a path's parameter comes from. */
 export const parameters: Record<string, (lab: LabWorld) => Promise<string | undefined>> = {
   "*": async () => "no/such/page",
+  measurementId: measurementOf,
+  sampleId: sampleOf,
 };
