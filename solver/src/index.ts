@@ -1,6 +1,10 @@
 /** The public surface of the solver. */
 export { type Arc, type ArcAnalysis, arcsOf, type Curve } from "./analysis/arcs.ts";
 export * from "./constants.ts";
+export { type CurrentVoltageCurve, type CurveRequest, currentVoltageCurve } from "./driftDiffusion/currentVoltage.ts";
+export { type ComplexProfile, type HarmonicProfiles, harmonicProfilesOf } from "./driftDiffusion/harmonicProfiles.ts";
+export { type OperatingPoint, type OperatingPoints, operatingPointsOf } from "./driftDiffusion/operatingPoints.ts";
+export { type Profiles, profilesOf } from "./driftDiffusion/profiles.ts";
 export * from "./result.ts";
 export * from "./scenario/device.ts";
 export * from "./scenario/errors.ts";
@@ -21,5 +25,5 @@ export {
   techniques,
 } from "./scenario/schema.ts";
 export { warningsOf } from "./scenario/warnings.ts";
-export { type SolvedSpectra, type SolveOptions, solve, solveSpectra } from "./solve.ts";
+export { type SolvedSpectra, type SolveOptions, type SolverMemory, solve, solveSpectra } from "./solve.ts";
 export * from "./version.ts";

@@ -2,6 +2,7 @@
 import { solveDiffusion } from "./closedForm/diffusion.ts";
 import { solveGaertner } from "./closedForm/gaertner.ts";
 import { solveTransit } from "./closedForm/transit.ts";
+import type { OperatingPoints } from "./driftDiffusion/operatingPoints.ts";
 import { solveDriftDiffusion } from "./driftDiffusion/solve.ts";
 import { solveLayeredDiffusion } from "./layeredDiffusion/layeredDiffusion.ts";
 import type { ResultDocument, SpectrumResult, Warning } from "./result.ts";
@@ -19,6 +20,13 @@ export interface SolveOptions {
   signal?: { readonly aborted: boolean };
   /** Called with the fraction done, 0 to 1. */
   onProgress?: (fraction: number) => void;
+  /** Carries states from one call to the next of a scenario that differs little, so that they begin near the answer. */
+  memory?: SolverMemory;
+}
+
+/** States that the full model left behind; begin with `{ points: null }`. */
+export interface SolverMemory {
+  points: OperatingPoints | null;
 }
 
 export interface SolvedSpectra {

@@ -45,3 +45,52 @@ export function moveCut(problem: Problem, state: State, cut: number): void {
   }
   state.cut = cut;
 }
+
+/**
+ * A state of one problem as a start for another with the same number of layers: interpolated linearly over the relative
+ * depth in each layer. Null where the layers do not correspond.
+ */
+export function transferState(from: Problem, state: State, to: Problem): State | null {
+  const count = from.device.layers.length;
+  if (count !== to.device.layers.length) return null;
+  const step = from.sign * state.voltage;
+  const { nodes } = to;
+  const result: State = {
+    potential: new Float64Array(nodes),
+    electronEnergy: new Float64Array(nodes),
+    holeEnergy: new Float64Array(nodes),
+    voltage: state.voltage,
+    cut: nodes - 2,
+    ionLevels: new Float64Array(to.ions.length),
+  };
+  const reached = to.sign * state.voltage;
+  let source = 0;
+  let sourceStart = 0;
+  let start = 0;
+  let node = 0;
+  for (let k = 0; k < count; k++) {
+    const scale = from.device.layers[k].thickness / to.device.layers[k].thickness;
+    const end = start + to.device.layers[k].thickness;
+    while (node < nodes && (node < to.edgeLayer.length ? to.edgeLayer[Math.max(node - 1, 0)] : k) <= k) {
+      const depth = sourceStart + (to.x[node] - start) * scale;
+      while (source < from.nodes - 2 && from.x[source + 1] < depth) source += 1;
+      const width = from.x[source + 1] - from.x[source];
+      const fraction = Math.min(1, Math.max(0, (depth - from.x[source]) / width));
+      const behind = node === nodes - 1 ? reached : 0;
+      const between = (values: Float64Array, sign: number) => {
+        const left = values[source] + (source > state.cut ? sign * step : 0);
+        const right = values[source + 1] + (source + 1 > state.cut ? sign * step : 0);
+        return left + fraction * (right - left) - sign * behind;
+      };
+      result.potential[node] = between(state.potential, 1);
+      result.electronEnergy[node] = between(state.electronEnergy, -1);
+      result.holeEnergy[node] = between(state.holeEnergy, -1);
+      node += 1;
+    }
+    start = end;
+    sourceStart += from.device.layers[k].thickness;
+  }
+  result.potential[0] = to.front.potential;
+  result.potential[nodes - 1] = to.back.potential;
+  return result;
+}

@@ -1,14 +1,14 @@
 /** What a solved state strains: said beside the result. */
 import type { Warning } from "../result.ts";
 import { holdIons } from "./ions.ts";
-import type { OperatingState } from "./solve.ts";
+import type { OperatingPoint } from "./operatingPoints.ts";
 
 /** Densities of ions (m⁻³) above which a dilute species is marginal, and fails: formula units of a halide perovskite, from memory. */
 const marginalDensity = 4e26;
 const formulaUnits = 4e27;
 
 /** Warnings of one operating point, one per layer and ion species. */
-export function stackWarnings(point: OperatingState): Warning[] {
+export function stateWarnings(point: OperatingPoint): Warning[] {
   const { problem, steady } = point;
   const { device, edgeLayer } = problem;
   const ions = steady.drive.heldIons ?? holdIons(problem, steady.state);
