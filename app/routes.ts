@@ -11,6 +11,7 @@ export default [
   ]),
   route("demo", "routes/public/demo.ts"),
   route("theme", "routes/public/theme.ts"),
+  route("labs/new", "routes/account/newLab.ts"),
   route("sign-out", "routes/account/signOut.ts"),
   route("lab/:labId", "routes/lab/layout.tsx", [
     index("routes/lab/index.tsx"),

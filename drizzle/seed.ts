@@ -1,23 +1,31 @@
 /** The demo's content: an invented lab and a second one beside it. Running it again changes nothing. */
 import { demoLabName } from "~/models/demo.server";
-import { createLab, findLabByName } from "~/models/labs.server";
+import { createLab, findLabByName, type Role } from "~/models/labs.server";
 import { ensureUser } from "~/models/users.server";
+import { seedScenarios } from "./seedScenarios";
+
+const invented: { lab: string; people: { email: string; name: string; role: Role }[] }[] = [
+  {
+    lab: demoLabName,
+    people: [
+      { email: "astrid@halden.example", name: "Astrid Vollan", role: "owner" },
+      { email: "milo@halden.example", name: "Milo Terrane", role: "researcher" },
+      { email: "sunniva@halden.example", name: "Sunniva Brekk", role: "viewer" },
+    ],
+  },
+  {
+    lab: "Kestrel photoelectrode lab",
+    people: [{ email: "orla@kestrel.example", name: "Orla Penhale", role: "owner" }],
+  },
+];
 
 /** Makes what the demo lacks. */
 export async function seedDemo(): Promise<void> {
-  if (await findLabByName(demoLabName)) return;
-  const owner = await ensureUser("astrid@halden.example", "Astrid Vollan");
-  const researcher = await ensureUser("milo@halden.example", "Milo Terrane");
-  const viewer = await ensureUser("sunniva@halden.example", "Sunniva Brekk");
-  await createLab(
-    demoLabName,
-    [
-      { userId: owner.id, role: "owner" },
-      { userId: researcher.id, role: "researcher" },
-      { userId: viewer.id, role: "viewer" },
-    ],
-    { invented: true },
-  );
-  const neighbour = await ensureUser("orla@kestrel.example", "Orla Penhale");
-  await createLab("Kestrel photoelectrode lab", [{ userId: neighbour.id, role: "owner" }], { invented: true });
+  for (const { lab: name, people } of invented) {
+    const members = await Promise.all(
+      people.map(async ({ email, name, role }) => ({ userId: (await ensureUser(email, name)).id, role })),
+    );
+    const lab = (await findLabByName(name)) ?? (await createLab(name, members, { invented: true }));
+    await seedScenarios(lab.id, members[0].userId);
+  }
 }

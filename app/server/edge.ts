@@ -150,11 +150,13 @@ export function createEdge(
     if (!unsafe(request.method)) return next();
     if (!isOwnRequest(request.headers, `${request.protocol}://${request.headers.host}`))
       return refuse(request, response, 403, "crossSiteRefused", "This request did not come from a page of this site.");
+    const ceiling = bodyCeiling(request.path);
+    const isTooLong = Number(request.headers["content-length"] ?? 0) > ceiling;
+    // What is refused is not read either; the connection ends with the answer.
+    if (isTooLong || request.headers["transfer-encoding"]) response.set("Connection", "close");
     if (request.headers["transfer-encoding"])
       return refuse(request, response, 411, "bodyRefused", "Say how long the body is (Content-Length).");
-    const ceiling = bodyCeiling(request.path);
-    if (Number(request.headers["content-length"] ?? 0) > ceiling)
-      return refuse(request, response, 413, "bodyRefused", `At most ${ceiling} bytes are taken here.`);
+    if (isTooLong) return refuse(request, response, 413, "bodyRefused", `At most ${ceiling} bytes are taken here.`);
     next();
   });
 

@@ -1,15 +1,18 @@
-import { Form, href, Link } from "react-router";
+import { Form, href, Link, useFetcher } from "react-router";
+import { Field } from "~/components/ui/field";
 import { listLabsOf } from "~/models/labs.server";
+import type { action as startLab } from "~/routes/account/newLab";
 import { actorContext } from "~/services/context.server";
 import { settings } from "~/services/settings.server";
 import type { Route } from "./+types/landing";
 
 export async function loader({ context }: Route.LoaderArgs) {
   const actor = context.get(actorContext);
-  return { demo: settings().demo, signedIn: actor !== null, labs: actor ? await listLabsOf(actor.user.id) : [] };
+  const { demo, signUp } = settings();
+  return { demo, signedIn: actor !== null, mayStart: signUp, labs: actor ? await listLabsOf(actor.user.id) : [] };
 }
 
-export default function Landing({ loaderData: { demo, signedIn, labs } }: Route.ComponentProps) {
+export default function Landing({ loaderData: { demo, signedIn, mayStart, labs } }: Route.ComponentProps) {
   return (
     <div className="mx-auto max-w-2xl">
       <h1 className="font-semibold text-display">Which process makes each arc</h1>
@@ -35,7 +38,17 @@ export default function Landing({ loaderData: { demo, signedIn, labs } }: Route.
         </section>
       )}
       {signedIn && labs.length === 0 && (
-        <p className="mt-8">You belong to no lab yet. An owner of one can let you in.</p>
+        <p className="mt-8">
+          You belong to no lab yet. An owner of one can let you in{mayStart && ", or you start one of your own"}.
+        </p>
+      )}
+      {!signedIn && (
+        <p className="mt-6">
+          <Link to="/sign-in" className={demo ? "link" : "button"}>
+            Sign in
+          </Link>{" "}
+          with a code sent by e-mail.
+        </p>
       )}
       {demo && (
         <section aria-labelledby="demo" className="mt-8">
@@ -59,6 +72,32 @@ export default function Landing({ loaderData: { demo, signedIn, labs } }: Route.
           </Form>
         </section>
       )}
+      {signedIn && mayStart && <StartLab />}
     </div>
+  );
+}
+
+function StartLab() {
+  const fetcher = useFetcher<typeof startLab>();
+  return (
+    <section aria-labelledby="start" className="mt-8">
+      <h2 id="start" className="font-semibold text-large">
+        Start a lab of your own
+      </h2>
+      <fetcher.Form method="post" action="/labs/new" className="mt-2 grid max-w-sm gap-3">
+        <Field
+          name="name"
+          label="Name of the lab"
+          autoComplete="organization"
+          required
+          maxLength={80}
+          defaultValue={fetcher.data?.typed}
+          error={fetcher.data?.error}
+        />
+        <button type="submit" className="button-quiet justify-self-start">
+          Start the lab
+        </button>
+      </fetcher.Form>
+    </section>
   );
 }

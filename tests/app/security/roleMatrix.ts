@@ -38,6 +38,7 @@ export const matrix: Record<string, Row> = {
   "routes/account/signInCode": { GET: everybody, POST: everybody },
   "routes/account/signOut": { POST: everybody },
   "routes/account/account": { GET: signedIn, POST: signedIn },
+  "routes/account/newLab": { POST: signedIn },
   "routes/lab/layout": { GET: viewer },
   "routes/lab/index": { GET: viewer },
   "routes/lab/people": { GET: viewer },
