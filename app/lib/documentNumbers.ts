@@ -8,13 +8,13 @@ export const fieldAt = (holder: unknown, keys: Keys): unknown =>
 
 /**
  * A copy of a document with one field replaced; what did not change is shared. Undefined takes the field out, and the
- * objects that are empty without it.
+ * objects that are empty without it; entries of lists stay.
  */
 export function withField<Holder>(holder: Holder, keys: Keys, value: unknown): Holder {
   const [key, ...rest] = keys;
   if (key === undefined) return value as Holder;
   const inner = withField(fieldAt(holder, [key]), rest, value);
-  if (Array.isArray(holder)) return holder.with(Number(key), inner) as Holder;
+  if (Array.isArray(holder)) return holder.with(Number(key), inner ?? {}) as Holder;
   const copy: Record<string, unknown> = { ...(holder as object | undefined), [key]: inner };
   if (inner === undefined) delete copy[key];
   const emptied = inner === undefined && Object.keys(copy).length === 0;

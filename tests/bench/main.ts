@@ -10,6 +10,7 @@ export type Bench = (say: (line: string) => void) => object | Promise<object>;
 const benches: Record<string, () => Promise<{ run: Bench }>> = {
   yardstick: () => import("./yardstick.ts"),
   harmonic: () => import("./harmonic.ts"),
+  drag: () => import("./drag.ts"),
 };
 
 const asked = process.argv.slice(2);

@@ -42,6 +42,7 @@ export function SpectraView({ spectrum, series, linked, dragging, readout }: Spe
       : [];
   }, [series]);
   const imUp = direction === "up";
+  const stacked = useMediaQuery("(min-width: 80rem)");
   const phone = useMediaQuery("(max-width: 47.99rem)");
   const [phonePart, setPhonePart] = useState<"upper" | "lower">("lower");
   const other = (
@@ -77,7 +78,8 @@ export function SpectraView({ spectrum, series, linked, dragging, readout }: Spe
             key={`upper ${technique} ${upper}`}
             title={`${name}, ${partWords[upper]}`}
             part={upper}
-            height={phone ? 170 : 194}
+            xLabelsHidden={stacked}
+            height={phone ? 170 : stacked ? 184 : 220}
             initialWidth={344}
             tools={
               <>
@@ -99,7 +101,7 @@ export function SpectraView({ spectrum, series, linked, dragging, readout }: Spe
             key={`lower ${technique} ${lower}`}
             title={`${name}, ${partWords[lower]}`}
             part={lower}
-            height={phone ? 170 : 220}
+            height={phone ? 170 : stacked ? 230 : 220}
             initialWidth={344}
             tools={other}
           />

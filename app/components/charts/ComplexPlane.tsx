@@ -44,19 +44,24 @@ function decadeNames(series: Series, geometry: Geometry) {
   const { width, height } = geometry.frame;
   const names: { x: number; y: number; left: number; top: number; frequency: number }[] = [];
   for (let index = points.length - 2; index > 0; index--) {
-    const frequency = places[points[index].index];
-    const power = Math.log10(frequency);
-    if (Math.abs(power - Math.round(power)) > 1e-6) continue;
-    const { x, y } = points[index];
-    const before = points[index - 1];
+    const here = points[index];
     const after = points[index + 1];
-    const bend = { x: before.x + after.x - 2 * x, y: before.y + after.y - 2 * y };
+    const power = Math.floor(Math.log10(places[after.index]) + 1e-9);
+    const from = Math.log10(places[here.index]);
+    const weight = (power - from) / (Math.log10(places[after.index]) - from);
+    // The decade must lie between this point and the next; a point that is one belongs to one interval only.
+    if (!(weight > 1e-9 && weight <= 1 + 1e-9)) continue;
+    const x = here.x + weight * (after.x - here.x);
+    const y = here.y + weight * (after.y - here.y);
+    const before = points[index - 1];
+    const next = points[Math.min(points.length - 1, index + 2)];
+    const bend = { x: before.x + next.x - here.x - after.x, y: before.y + next.y - here.y - after.y };
     const size = Math.hypot(bend.x, bend.y) || 1;
-    const left = x + (26 * bend.x) / size;
+    const left = x + (28 * bend.x) / size;
     const top = y + (17 * bend.y) / size;
     const clear = names.every((name) => Math.hypot(name.left - left, (name.top - top) * 2) > apart);
     if (clear && left > 20 && left < width - 20 && top > 40 && top < height - 4)
-      names.push({ x, y, left, top, frequency });
+      names.push({ x, y, left, top, frequency: 10 ** power });
   }
   return names;
 }

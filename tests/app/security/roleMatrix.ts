@@ -49,6 +49,8 @@ export const matrix: Record<string, Row> = {
   "routes/lab/measurements/raw": { GET: viewer },
   "routes/lab/samples/list": { GET: viewer, POST: researcher },
   "routes/lab/samples/sample": { GET: viewer, POST: researcher },
+  "routes/lab/scenarios/bench": { GET: viewer, POST: { needed: "researcher", form: { intent: "discard" } } },
+  "routes/lab/scenarios/predictionCsv": { GET: viewer },
 };
 
 export interface LabWorld {
@@ -84,4 +86,5 @@ export const parameters: Record<string, (lab: LabWorld) => Promise<string | unde
   "*": async () => "no/such/page",
   measurementId: measurementOf,
   sampleId: sampleOf,
+  scenarioId: (lab) => lab.select("SELECT id FROM scenarios WHERE lab_id = ? ORDER BY id LIMIT 1"),
 };

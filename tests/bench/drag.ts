@@ -1,0 +1,104 @@
+/**
+ * Repaint of the bench while a value is dragged, in Chromium on the built application: from the pointer event to the
+ * frame that shows the new curve.
+ */
+import { createClient } from "@libsql/client";
+import { chromium, type Page } from "playwright-core";
+import buildOnce from "../support/build.ts";
+import { requireChromium } from "../support/chromium.ts";
+import { startServer } from "../support/server.ts";
+import { timingOf, words } from "./timing.ts";
+
+interface Drag {
+  scenario: string;
+  /** Spoken name of the number that is dragged. */
+  number: RegExp;
+  /** ms within which a repaint is promised. */
+  bar: number;
+}
+
+const drags: Record<string, Drag> = {
+  closedForm: { scenario: "Mesoporous dye film", number: /electron lifetime/, bar: 33 },
+  fullModel: { scenario: "p-i-n perovskite, mobile cations", number: /cation mobility/, bar: 100 },
+};
+
+const warmUps = 10;
+const moves = 60;
+
+/** Resolves with the ms from the next pointer event to the frame in which a curve has changed. */
+const nextRepaint = (page: Page) =>
+  page.evaluate(
+    () =>
+      new Promise<number>((resolve) => {
+        let start = 0;
+        const onMove = (event: PointerEvent) => {
+          start ||= event.timeStamp;
+        };
+        addEventListener("pointermove", onMove, { capture: true });
+        const watch = new MutationObserver(() => {
+          if (start === 0) return;
+          watch.disconnect();
+          removeEventListener("pointermove", onMove, { capture: true });
+          const painted = new MessageChannel();
+          painted.port1.onmessage = () => resolve(performance.now() - start);
+          requestAnimationFrame(() => painted.port2.postMessage(null));
+        });
+        for (const plot of document.querySelectorAll(".plot-surface svg"))
+          watch.observe(plot, { subtree: true, attributes: true, attributeFilter: ["d"] });
+      }),
+  );
+
+async function times(page: Page, { number }: Drag): Promise<number[]> {
+  const field = page.getByRole("spinbutton", { name: number }).first();
+  await field.scrollIntoViewIfNeeded();
+  const place = await field.boundingBox();
+  if (!place) throw new Error(`The number ${number} is not on the page`);
+  const x = place.x + place.width / 2;
+  const y = place.y + place.height / 2;
+  await page.mouse.move(x, y);
+  await page.mouse.down();
+  await page.mouse.move(x + 5, y);
+  await page.waitForTimeout(300);
+  const found: number[] = [];
+  for (let move = 0; move < warmUps + moves; move++) {
+    const repaint = nextRepaint(page);
+    await page.mouse.move(x + 8 + 20 * Math.abs((move % 6) - 3), y);
+    const milliseconds = await repaint;
+    if (move >= warmUps) found.push(milliseconds);
+  }
+  await page.mouse.up();
+  return found;
+}
+
+export async function run(say: (line: string) => void) {
+  buildOnce();
+  const server = await startServer();
+  const browser = await chromium.launch({ executablePath: requireChromium(), args: ["--no-sandbox", "--disable-gpu"] });
+  try {
+    const page = await browser.newPage({ baseURL: server.origin, viewport: { width: 1440, height: 900 } });
+    await page.goto("/");
+    await page.getByRole("button", { name: "as researcher" }).click();
+    await page.waitForURL(/\/lab\/[^/]+$/);
+    const client = createClient({ url: `file:${server.dataFolder}/demilune.db`, timeout: 10_000 });
+    const results: Record<string, object> = {};
+    for (const [name, drag] of Object.entries(drags)) {
+      const lab = new URL(page.url()).pathname.split("/")[2];
+      const sql = "SELECT id FROM scenarios WHERE lab_id = ? AND name = ?";
+      const { rows } = await client.execute({ sql, args: [lab, drag.scenario] });
+      await page.goto(`/lab/${lab}/scenarios/${rows[0].id}`);
+      await page.waitForFunction(
+        () => document.querySelector("[data-milliseconds]")?.getAttribute("data-busy") === "false",
+      );
+      const found = (await times(page, drag)).toSorted((one, other) => one - other);
+      const timing = timingOf(found);
+      const late = found[Math.ceil(0.95 * found.length) - 1];
+      say(`${name}: ${words(timing)}, 95 % within ${late.toFixed(1)} ms; promised ${drag.bar} ms`);
+      results[name] = { ...timing, p95Ms: late, promisedMs: drag.bar };
+    }
+    client.close();
+    return results;
+  } finally {
+    await browser.close();
+    await server.stop();
+  }
+}
