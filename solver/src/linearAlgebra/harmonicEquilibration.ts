@@ -10,61 +10,87 @@
 import type { HarmonicSystem } from "./harmonicSystem.ts";
 
 export interface EquilibratedSystem {
+  /** Scaled copy; the unused blocks at the ends are zero. */
   system: HarmonicSystem;
   /** nodes × m: the unknowns of the original system are these times those of the scaled one. */
   columnScale: Float64Array;
 }
 
-const powerOfTwoReciprocal = (largest: number) => (largest > 0 ? 2 ** -Math.ceil(Math.log2(largest)) : 1);
+const double = new Float64Array(1);
+const words = new Uint32Array(double.buffer);
 
-/** Calls visit(row, column, index, k) for every entry of the block array `k` (0 lower, 1 diagonal, 2 upper, 3 storage). */
-function forEachEntry(
-  { nodes, blockSize: m }: HarmonicSystem,
-  visit: (row: number, column: number, index: number, k: number) => void,
-) {
-  for (let i = 0; i < nodes; i++)
-    for (let k = 0; k < 4; k++) {
-      const j = k === 0 ? i - 1 : k === 2 ? i + 1 : i;
-      if (j < 0 || j >= nodes) continue;
-      for (let a = 0; a < m; a++) for (let c = 0; c < m; c++) visit(i * m + a, j * m + c, (i * m + a) * m + c, k);
-    }
+/** 2⁻ᵉ with 2ᵉ ≤ size < 2ᵉ⁺¹; 1 for zero. The exponent is read from the number's bits (IEEE 754, little endian). */
+function powerOfTwoReciprocal(size: number): number {
+  if (size === 0) return 1;
+  double[0] = size;
+  const exponent = Math.max(1, Math.min(2045, (words[1] >>> 20) & 0x7ff));
+  words[0] = 0;
+  words[1] = (2046 - exponent) << 20;
+  return double[0];
 }
 
-/** Scales so that the largest entry of each row and then of each column lies in (½, 1]. */
+/** Largest |entry| of each equation, of `real` where it has any, else of `storage`. */
+function rowScales({ nodes, blockSize: m, lower, diagonal, upper, storage }: HarmonicSystem): Float64Array {
+  const scale = new Float64Array(nodes * m);
+  for (let row = 0; row < scale.length; row++) {
+    let real = 0;
+    let stored = 0;
+    for (let at = row * m; at < (row + 1) * m; at++) {
+      real = Math.max(real, Math.abs(diagonal[at]));
+      if (row >= m) real = Math.max(real, Math.abs(lower[at]));
+      if (row < scale.length - m) real = Math.max(real, Math.abs(upper[at]));
+      stored = Math.max(stored, Math.abs(storage[at]));
+    }
+    scale[row] = powerOfTwoReciprocal(real > 0 ? real : stored);
+  }
+  return scale;
+}
+
+/** Scales of the unknowns once the equations are scaled. */
+function columnScales(system: HarmonicSystem, rowScale: Float64Array): Float64Array {
+  const { nodes, blockSize: m, lower, diagonal, upper, storage } = system;
+  const real = new Float64Array(nodes * m);
+  const stored = new Float64Array(nodes * m);
+  for (let row = 0; row < real.length; row++) {
+    const weight = rowScale[row];
+    const here = row - (row % m);
+    for (let c = 0; c < m; c++) {
+      const at = row * m + c;
+      const column = here + c;
+      real[column] = Math.max(real[column], Math.abs(diagonal[at]) * weight);
+      stored[column] = Math.max(stored[column], Math.abs(storage[at]) * weight);
+      if (row >= m) real[column - m] = Math.max(real[column - m], Math.abs(lower[at]) * weight);
+      if (row < real.length - m) real[column + m] = Math.max(real[column + m], Math.abs(upper[at]) * weight);
+    }
+  }
+  for (let column = 0; column < real.length; column++)
+    real[column] = powerOfTwoReciprocal(real[column] > 0 ? real[column] : stored[column]);
+  return real;
+}
+
+/** Scales so that the largest entry of each row and then of each column lies between 1 and 2. */
 export function equilibrate(system: HarmonicSystem): EquilibratedSystem {
   const { nodes, blockSize: m } = system;
-  const source = [system.lower, system.diagonal, system.upper, system.storage];
-  const scales = (index: (row: number, column: number) => number, weight: (row: number) => number) => {
-    const real = new Float64Array(nodes * m);
-    const storage = new Float64Array(nodes * m);
-    forEachEntry(system, (row, column, entry, k) => {
-      const target = k === 3 ? storage : real;
-      const size = Math.abs(source[k][entry]) * weight(row);
-      if (size > target[index(row, column)]) target[index(row, column)] = size;
-    });
-    return real.map((size, r) => powerOfTwoReciprocal(size > 0 ? size : storage[r]));
+  const rowScale = rowScales(system);
+  const columnScale = columnScales(system, rowScale);
+  /** The block array whose columns belong to the node `shift` away. */
+  const scaled = (blocks: Float64Array, shift: number) => {
+    const target = new Float64Array(blocks.length);
+    for (let row = Math.max(0, -shift * m); row < Math.min(nodes, nodes - shift) * m; row++) {
+      const columns = row - (row % m) + shift * m;
+      for (let c = 0; c < m; c++) target[row * m + c] = blocks[row * m + c] * rowScale[row] * columnScale[columns + c];
+    }
+    return target;
   };
-  const rowScale = scales(
-    (row) => row,
-    () => 1,
-  );
-  const columnScale = scales(
-    (_, column) => column,
-    (row) => rowScale[row],
-  );
-  const scaled = source.map((blocks) => new Float64Array(blocks.length));
-  forEachEntry(system, (row, column, entry, k) => {
-    scaled[k][entry] = source[k][entry] * rowScale[row] * columnScale[column];
-  });
   return {
     columnScale,
     system: {
       nodes,
       blockSize: m,
-      lower: scaled[0],
-      diagonal: scaled[1],
-      upper: scaled[2],
-      storage: scaled[3],
+      lower: scaled(system.lower, -1),
+      diagonal: scaled(system.diagonal, 0),
+      upper: scaled(system.upper, 1),
+      storage: scaled(system.storage, 0),
       relaxations: system.relaxations?.map(({ node, decay, column, row }) => ({
         node,
         decay,

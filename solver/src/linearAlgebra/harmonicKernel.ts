@@ -1,14 +1,10 @@
 /**
  * Harmonic systems by the WebAssembly kernel: two frequencies in each vector register, no row exchanges, unknowns only where
  * they are coupled. Frequencies at which a pivot was out of proportion are solved again with row exchanges.
- *
- *   symbol    meaning                                                                            shape
- *   active    unknowns of a node that are coupled to anything; the others are b/d                ≤ m
- *   hub       unknown that all equations of both neighbours may contain (the potential)          one per system
- *   record    D, M, lower, upper, right-hand sides of a node, active unknowns only, hub first    see kernel/index.ts
  */
 import { pivotedHarmonicSolver } from "./harmonicElimination.ts";
 import { type EquilibratedSystem, equilibrate } from "./harmonicEquilibration.ts";
+import { type PackedSystem, pack } from "./harmonicPacking.ts";
 import {
   checkHarmonicSystem,
   type HarmonicRequest,
@@ -59,125 +55,12 @@ function kernelOfThread(): Kernel | undefined {
 /** Frequency pairs in a batch: many fill the processor, few keep what substitution needs in its cache. */
 const PAIRS_WITHOUT_SUBSTITUTION = 8;
 const PAIRS_WITH_SUBSTITUTION = 2;
-const TABLE_ENTRIES = 6;
-
-interface Packed {
-  /** Unknowns of each node in the order of its record. */
-  active: number[][];
-  largest: number;
-  records: Float64Array;
-  table: Int32Array;
-  extents: Int32Array;
-}
-
-/** Unknowns of each node that are coupled to anything but themselves (at least one a node, so that no block is empty). */
-function activeUnknowns(system: HarmonicSystem): number[][] {
-  const { nodes, blockSize: m, lower, diagonal, upper, storage } = system;
-  const coupled = new Uint8Array(nodes * m);
-  for (let i = 0; i < nodes; i++)
-    for (let a = 0; a < m; a++) {
-      const row = i * m + a;
-      if (diagonal[row * m + a] === 0) coupled[row] = 1;
-      for (let c = 0; c < m; c++) {
-        const at = row * m + c;
-        if (lower[at] !== 0 && i > 0) coupled[row] = coupled[row - a - m + c] = 1;
-        if (upper[at] !== 0 && i < nodes - 1) coupled[row] = coupled[row - a + m + c] = 1;
-        if (storage[at] !== 0 || (diagonal[at] !== 0 && a !== c)) coupled[row] = coupled[row - a + c] = 1;
-      }
-    }
-  for (const { node, column, row } of system.relaxations ?? [])
-    for (let a = 0; a < m; a++) if (column[a] !== 0 || row[a] !== 0) coupled[node * m + a] = 1;
-  return Array.from({ length: nodes }, (_, i) => {
-    const active = Array.from({ length: m }, (_, a) => a).filter((a) => coupled[i * m + a]);
-    return active.length > 0 ? active : [0];
-  });
-}
-
-/** True where block i has entries only in its hub column and on its diagonal. */
-function isArrow(blocks: Float64Array, i: number, m: number, hub: number): boolean {
-  for (let a = 0; a < m; a++)
-    for (let c = 0; c < m; c++) if (c !== hub && c !== a && blocks[(i * m + a) * m + c] !== 0) return false;
-  return true;
-}
-
-/** Whether the kernel's unrolled loops may eliminate node i into node j, its neighbour. */
-function arrowStep(system: HarmonicSystem, active: number[][], hub: number, i: number, j: number): boolean {
-  const { blockSize: m, lower, upper, storage } = system;
-  const [out, back] = j > i ? [upper, lower] : [lower, upper];
-  const size = active[i].length;
-  return (
-    size >= 3 &&
-    size <= 5 &&
-    active[i].includes(hub) &&
-    active[j].length === size &&
-    active[j].every((a) => active[i].includes(a)) &&
-    isArrow(out, i, m, hub) &&
-    isArrow(back, j, m, hub) &&
-    isArrow(storage, j, m, hub)
-  );
-}
-
-/** Lays the active part of a system out as the kernel's records. */
-function pack(system: HarmonicSystem): Packed {
-  const { nodes, blockSize: m, rightHandSides } = system;
-  const unordered = activeUnknowns(system);
-  const arrows = (hub: number) => {
-    let count = 0;
-    for (let i = 1; i < nodes; i++) if (arrowStep(system, unordered, hub, i - 1, i)) count++;
-    return count;
-  };
-  let hub = 0;
-  for (let candidate = 1, best = arrows(0); candidate < m && best < nodes - 1; candidate++) {
-    const count = arrows(candidate);
-    if (count > best) [hub, best] = [candidate, count];
-  }
-  const active = unordered.map((list) => (list.includes(hub) ? [hub, ...list.filter((a) => a !== hub)] : list));
-
-  const relaxationsOf: number[][] = Array.from({ length: nodes }, () => []);
-  system.relaxations?.forEach(({ node }, k) => {
-    relaxationsOf[node].push(k);
-  });
-  const values: number[] = [];
-  const table = new Int32Array(nodes * TABLE_ENTRIES);
-  for (let i = 0; i < nodes; i++) {
-    const own = active[i];
-    const entries: number[] = [values.length * 8, own.length];
-    const block = (source: Float64Array, columns: number[]) => {
-      for (const a of own) for (const c of columns) values.push(source[(i * m + a) * m + c]);
-    };
-    block(system.diagonal, own);
-    block(system.storage, own);
-    block(system.lower, i > 0 ? active[i - 1] : []);
-    block(system.upper, i < nodes - 1 ? active[i + 1] : []);
-    for (const b of rightHandSides) for (const a of own) values.push(b[i * m + a]);
-    entries.push(i < nodes - 1 && arrowStep(system, active, hub, i, i + 1) ? 1 : 0);
-    entries.push(i > 0 && arrowStep(system, active, hub, i, i - 1) ? 1 : 0);
-    entries.push(values.length * 8, relaxationsOf[i].length);
-    for (const k of relaxationsOf[i]) {
-      const { decay, column, row } = system.relaxations![k];
-      values.push(decay, ...own.map((a) => column[a]), ...own.map((c) => row[c]));
-    }
-    table.set(entries, i * TABLE_ENTRIES);
-  }
-  const extents = rightHandSides.flatMap((b) => {
-    const first = b.findIndex((value) => value !== 0);
-    const last = b.findLastIndex((value) => value !== 0);
-    return first < 0 ? [nodes, -1] : [Math.floor(first / m), Math.floor(last / m)];
-  });
-  return {
-    active,
-    largest: Math.max(...active.map((list) => list.length)),
-    records: Float64Array.from(values),
-    table,
-    extents: Int32Array.from(extents),
-  };
-}
 
 /** Copies what the kernel solved for frequencies from…from+count−1 into the solution; returns the frequencies that need row exchanges. */
 function collect(
   kernel: Kernel,
   { system, columnScale }: EquilibratedSystem,
-  { active, largest }: Packed,
+  { active, largest }: PackedSystem,
   solution: HarmonicSolution,
   from: number,
   count: number,
@@ -214,7 +97,11 @@ function collect(
 }
 
 /** Unknowns that stand alone: b/d at every frequency. */
-function fillUncoupled({ system, columnScale }: EquilibratedSystem, { active }: Packed, solution: HarmonicSolution) {
+function fillUncoupled(
+  { system, columnScale }: EquilibratedSystem,
+  { active }: PackedSystem,
+  solution: HarmonicSolution,
+) {
   const { blockSize: m, rightHandSides, diagonal } = system;
   const { firstNode, lastNode, real, status } = solution;
   const wanted = (lastNode - firstNode + 1) * m;
