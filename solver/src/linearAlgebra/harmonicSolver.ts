@@ -1,6 +1,5 @@
-/** The way in to harmonic systems: the fastest safe solver for the system and the machine. */
+/** The way in to harmonic systems. */
 import { pivotedHarmonicSolver } from "./harmonicElimination.ts";
-import { kernelHarmonicSolver } from "./harmonicKernel.ts";
 import type { HarmonicSolver, HarmonicSystem } from "./harmonicSystem.ts";
 
 /**
@@ -8,5 +7,5 @@ import type { HarmonicSolver, HarmonicSystem } from "./harmonicSystem.ts";
  * @throws RangeError when an array of the system has the wrong length
  */
 export function harmonicSolver(system: HarmonicSystem): HarmonicSolver {
-  return kernelHarmonicSolver(system) ?? pivotedHarmonicSolver(system);
+  return pivotedHarmonicSolver(system);
 }
