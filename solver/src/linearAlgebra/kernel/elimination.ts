@@ -5,7 +5,7 @@
  *   H, h     flux towards the nodes that remain = H x + h at the node reached so far   m × m, sides × m numbers
  *   P, E     flux through the edge = P Δ + E x' + j⁰ with Δ = x' − x                    arrows of reals
  *   S        (P + H)⁻¹                                                                m × m numbers
- *   W, u     Δ = W x' + u: W = S (H − E), u = S (h − j⁰)                                m × m, sides × m numbers
+ *   W, V, u  Δ = W x' + u and x = V x' − u: W = S (H − E), V = S (P + E), u = S (h − j⁰)  m × m, sides × m numbers
  *
  * At the next node the flux is (E + P W) x' + P S h + H S j⁰, and its balance adds G + iωM + Σ c rᵀ/(d+iω) to H and takes b
  * from h. Conductances are never subtracted from sums of conductances, so a small H survives beside a large P: the block form of
@@ -18,6 +18,7 @@ import { invert } from "./inverse";
 import {
   blockBytes,
   blocks,
+  carries,
   edgeOf,
   factors,
   fieldBytes,
@@ -229,6 +230,24 @@ function entryOfProduct(m: usize, s: usize, t: usize, target: usize): void {
   put(target, re, im);
 }
 
+/** One row of V: S (P + E). */
+// @ts-ignore: decorator
+@inline
+function rowOfCarry(m: usize, s: usize, edge: usize, mean: usize, target: usize): void {
+  let re = f64x2.splat(0);
+  let im = re;
+  for (let c: usize = 0; c < m; c++) {
+    const x = realPart(s + c * NUMBER);
+    const y = imaginaryPart(s + c * NUMBER);
+    const hub = f64x2.add(coefficient(edge + c * REAL), coefficient(mean + c * REAL));
+    re = plusProduct(re, x, hub);
+    im = plusProduct(im, y, hub);
+    const own = f64x2.add(coefficient(edge + (m + c) * REAL), coefficient(mean + (m + c) * REAL));
+    put(target + c * NUMBER, f64x2.mul(x, own), f64x2.mul(y, own));
+  }
+  put(target, re, im);
+}
+
 /** One entry of the next H: G + P₀ W[0, c] + P W[a, c]. */
 // @ts-ignore: decorator
 @inline
@@ -312,6 +331,10 @@ function advance(m: usize, node: i32, next: i32, kept: i32, balance: bool): void
       if (m > 3) entryOfProduct(m, s, h + 3 * NUMBER, target + 3 * NUMBER);
       if (m > 4) entryOfProduct(m, s, h + 4 * NUMBER, target + 4 * NUMBER);
     }
+    if (kept >= 0) {
+      const v = carries + (<usize>kept * pairs + q) * blockBytes;
+      for (let a: usize = 0; a < m; a++) rowOfCarry(m, inverseBlock + a * row, edge, mean, v + a * row);
+    }
     const omega = v128.load(frequencies + q * 16);
     const zero = f64x2.splat(0);
     rowOfNext(m, true, g, coefficient(edge), zero, w, w, h);
@@ -358,7 +381,7 @@ function advance5(node: i32, next: i32, kept: i32, balance: bool): void {
 }
 
 /**
- * Eliminates from one end up to the meeting node, whose balance is added or not. W and u of the nodes from `first` to `last` are kept, at
+ * Eliminates from one end up to the meeting node, whose balance is added or not. W, V and u of the nodes from `first` to `last` are kept, at
  * their place from `first` on.
  */
 export function sweep(from: i32, meeting: i32, first: i32, last: i32, balance: bool): void {

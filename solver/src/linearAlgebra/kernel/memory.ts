@@ -45,8 +45,9 @@ export let blocks: usize = 0;
 export let meetingBlocks: usize = 0;
 export let values: usize = 0;
 export let meetingValues: usize = 0;
-/** W and u of the nodes kept. */
+/** W, V and u of the nodes kept. */
 export let factors: usize = 0;
+export let carries: usize = 0;
 export let steps: usize = 0;
 /** S, W where it is not kept, small vectors. */
 export let inverseBlock: usize = 0;
@@ -102,6 +103,8 @@ export function arrange(
   records = end;
   end = (end + recordBytes + 63) & ~63;
   factors = end;
+  end += keptNodes * pairs * blockBytes;
+  carries = end;
   end += keptNodes * pairs * blockBytes;
   steps = end;
   end += keptNodes * fieldBytes;

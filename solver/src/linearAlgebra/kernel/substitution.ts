@@ -2,7 +2,8 @@
  * Unknowns and fluxes outward from the meeting node, once every other node is eliminated.
  *
  *   symbol   meaning                                                          shape
- *   Δ        step x' − x to the neighbour nearer the meeting node, W x' + u     sides × m numbers
+ *   x, Δ     unknowns V x' − u, and step x' − x to the neighbour nearer the     sides × m numbers
+ *            meeting node, W x' + u; neither is a difference of the other
  *   j        flux through the edge in the direction of x, ±(P Δ + E x' + j⁰)    sides × m numbers
  *   J        reading of an edge, Σ (weight + iω weightᵢω) j                    per pair and side
  */
@@ -12,6 +13,7 @@ import { invertAny } from "./inverse";
 import {
   blockBytes,
   blocks,
+  carries,
   edgeOf,
   factors,
   fieldBytes,
@@ -115,6 +117,7 @@ function step(m: usize, node: i32, next: i32, first: i32, all: bool, isReading: 
   for (let q: usize = 0; q < pairs; q++) {
     const omega = v128.load(frequencies + q * 16);
     const w = factors + (kept * pairs + q) * blockBytes;
+    const carry = carries + (kept * pairs + q) * blockBytes;
     for (let k: usize = 0; k < sides; k++) {
       const offset = q * sideBytes + k * largest * NUMBER;
       const ahead = place(solution, next, all) + offset;
@@ -131,7 +134,12 @@ function step(m: usize, node: i32, next: i32, first: i32, all: bool, isReading: 
         const im = f64x2.add(imaginaryPart(scratch), imaginaryPart(u + a * NUMBER));
         const xRe = realPart(ahead + a * NUMBER);
         const xIm = imaginaryPart(ahead + a * NUMBER);
-        put(x + a * NUMBER, f64x2.sub(xRe, re), f64x2.sub(xIm, im));
+        dot(m, carry + a * row, ahead, scratch);
+        put(
+          x + a * NUMBER,
+          f64x2.sub(realPart(scratch), realPart(u + a * NUMBER)),
+          f64x2.sub(imaginaryPart(scratch), imaginaryPart(u + a * NUMBER)),
+        );
         if (a == 0) {
           re0 = re;
           im0 = im;
