@@ -26,7 +26,6 @@ test("section 3.2.3: keys sorted by UTF-16 code units", () => {
     "\u0080": "Control",
     "\u00f6": "Latin Small Letter O With Diaeresis",
   };
-  expect(Object.values(JSON.parse(canonicalJson(input)))).toContain("One");
   const order = ["Carriage Return", "One", "Control", "Latin Small", "Euro Sign", "Emoji", "Hebrew"];
   const places = order.map((word) => canonicalJson(input).indexOf(word));
   expect(places).toEqual(places.toSorted((a, b) => a - b));

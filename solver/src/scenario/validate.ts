@@ -9,8 +9,12 @@ type Issue = z.core.$ZodIssue;
 /** What stands for the whole document where a path would be empty. */
 const wholeDocument = "document";
 
-export const dotted = (path: readonly PropertyKey[]): string =>
-  path.length === 0 ? wholeDocument : path.map(String).join(".");
+/** A key as it stands in a path, in quotes where a plain one could be misread. */
+const keyText = (key: PropertyKey): string =>
+  /^[^\s."]+$/.test(String(key)) ? String(key) : JSON.stringify(String(key));
+
+const dotted = (path: readonly PropertyKey[]): string =>
+  path.length === 0 ? wholeDocument : path.map(keyText).join(".");
 
 /** A value as it is quoted in a message, cut where it is long. */
 function quoted(value: unknown): string {
