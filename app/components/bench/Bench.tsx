@@ -5,6 +5,7 @@ import { CrossSection } from "~/components/stack/CrossSection";
 import type { Picked } from "~/components/stack/stackProps";
 import { RichText } from "~/components/ui/RichText";
 import { formatNumber, formatQuantity, thinSpace } from "~/lib/numberFormat";
+import { spectrumFor, withMeasuredFrequencies } from "~/lib/overlay";
 import { modelNames, spectrumNames } from "~/lib/spectrumNames";
 import { useSolver } from "~/workers/useSolver";
 import { CircuitNumbers } from "./CircuitNumbers";
@@ -46,6 +47,8 @@ export interface BenchProps {
   besideBelow?: ReactNode;
 }
 
+const none: readonly Measurement[] = [];
+
 /** The layer one looks at first: that with mobile ions, else the one that absorbs. */
 function firstPick({ stack: { layers } }: ScenarioDocument): Picked {
   const ions = layers.findIndex((layer) => (layer.ions?.cationsPerCm3 ?? 0) > 0);
@@ -78,12 +81,13 @@ function AtThisFlux({ spectra }: { spectra: readonly SpectrumResult[] }) {
 
 /** The bench: the device at the left, its spectra at the right, what they mean below. */
 export function Bench(props: BenchProps) {
-  const { bench, measurements = [], exposed, fixedStructure } = props;
+  const { bench, measurements = none, exposed, fixedStructure } = props;
   const { document, change } = bench;
   const [tab, chooseTab] = useAddressChoice("spectrum", "1");
   const requests = document.spectra ?? [];
   const shown = Math.min(Math.max(0, Number.parseInt(tab, 10) - 1 || 0), Math.max(0, requests.length - 1));
-  const solved = useSolver(document, props.initialResult, shown);
+  const asked = useMemo(() => withMeasuredFrequencies(document, measurements), [document, measurements]);
+  const solved = useSolver(asked, props.initialResult, shown);
   const linked = useLinkedCursor();
   const [picked, setPicked] = useState<Picked | null>(() => firstPick(document));
   const [held, setHeld] = useState<(HeldCurve & { document: ScenarioDocument }) | null>(null);
@@ -93,7 +97,11 @@ export function Bench(props: BenchProps) {
   );
 
   const spectrum = solved.spectra?.[shown];
-  const series = useMemo(() => seriesOf(spectrum, held, measurements), [spectrum, held, measurements]);
+  const over = useMemo(
+    () => measurements.filter((measurement) => spectrumFor(document, measurement) === shown),
+    [document, measurements, shown],
+  );
+  const series = useMemo(() => seriesOf(spectrum, held, over), [spectrum, held, over]);
   const heldValues = useMemo(() => (held ? heldNumbers(held.document, document) : undefined), [held, document]);
   const numbers = { document, onChange: change, readOnly: exposed !== undefined };
   const kind = document.model?.kind ?? "driftDiffusion";
@@ -217,7 +225,12 @@ export function Bench(props: BenchProps) {
           </div>
         </aside>
       </div>
-      <PhoneSheet document={document} onChange={change} paths={exposed ?? usualPaths(document)}>
+      <PhoneSheet
+        document={document}
+        onChange={change}
+        paths={exposed ?? usualPaths(document)}
+        everywhere={exposed !== undefined}
+      >
         <button type="button" className="action" disabled={!bench.canUndo} onClick={bench.undo}>
           Undo
         </button>

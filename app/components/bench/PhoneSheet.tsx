@@ -51,17 +51,19 @@ interface PhoneSheetProps {
   onChange: ChangeDocument;
   /** Paths that may stand under the thumb, the first three that hold a number are taken. */
   paths: readonly string[];
+  /** Where they are all that may be moved, the sliders stand on wide screens too. */
+  everywhere?: boolean;
   /** Buttons under the sliders. */
   children?: ReactNode;
 }
 
 /** On a phone: at most three numbers under the thumb, at the lower edge while the page scrolls. */
-export function PhoneSheet({ document, onChange, paths, children }: PhoneSheetProps) {
+export function PhoneSheet({ document, onChange, paths, everywhere, children }: PhoneSheetProps) {
   const [open, setOpen] = useState(true);
   return (
     <section
       aria-label="Numbers to move"
-      className="not-printed sticky bottom-0 z-10 -mx-4 border-line border-t bg-sheet px-4 pt-2 pb-3 md:hidden"
+      className={`not-printed sticky bottom-0 z-10 -mx-4 border-line border-t bg-sheet px-4 pt-2 pb-3 ${everywhere ? "md:mx-0" : "md:hidden"}`}
     >
       {open &&
         slidersAt(document, paths).map((number) => (

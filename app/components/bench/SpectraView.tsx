@@ -7,6 +7,7 @@ import type { SpectrumSeries } from "~/components/charts/spectrum";
 import type { LinkedCursor } from "~/components/charts/useLinkedCursor";
 import { XYPlot } from "~/components/charts/XYPlot";
 import { useMediaQuery } from "~/components/ui/useMediaQuery";
+import { withLimit } from "~/lib/overlay";
 import { biasWords, techniqueNames, techniqueSymbols } from "~/lib/spectrumNames";
 import { predictionId } from "./spectrumSeries";
 import { useAddressChoice } from "./useAddressChoice";
@@ -27,13 +28,24 @@ const parts = {
 const partWords = { modulus: "modulus", phase: "phase", re: "real part", im: "imaginary part" } as const;
 
 /** One spectrum: a large complex plane, two parts over frequency beside it, residuals where something is measured. */
-export function SpectraView({ spectrum, series, linked, dragging, readout }: SpectraViewProps) {
+export function SpectraView(props: SpectraViewProps) {
+  const { spectrum, linked, dragging, readout } = props;
   const [direction, setDirection] = useAddressChoice("im", "down");
   const [view, setView] = useAddressChoice("parts", "polar");
-  const { technique, unit } = spectrum;
-  const symbol = techniqueSymbols[technique];
+  const { technique } = spectrum;
+  const [normalised, setNormalised] = useAddressChoice("normalise", "no");
+  const measured = props.series.some(({ kind }) => kind === "measured");
+  const relative = measured && normalised === "yes";
+  const symbol = relative
+    ? `${techniqueSymbols[technique]}/${techniqueSymbols[technique]}(0)`
+    : techniqueSymbols[technique];
+  const series = useMemo(
+    () => (relative ? props.series.map((one) => withLimit(one)) : props.series),
+    [relative, props.series],
+  );
   const name = `${techniqueNames[technique]} at ${biasWords(spectrum.bias)}`;
   const [upper, lower] = view === "cartesian" ? parts.cartesian : parts.polar;
+  const unit = relative ? "1" : spectrum.unit;
   const shared = { spectra: series, symbol, unit, dragging, ...linked };
   const residuals = useMemo(() => {
     const prediction = series.find(({ id }) => id === predictionId);
@@ -65,9 +77,21 @@ export function SpectraView({ spectrum, series, linked, dragging, readout }: Spe
         height={phone ? 250 : 414}
         initialWidth={632}
         tools={
-          <button type="button" className="plot-tool" onClick={() => setDirection(imUp ? "down" : "up")}>
-            {imUp ? "−Im up" : "Im up"}
-          </button>
+          <>
+            {measured && (
+              <button
+                type="button"
+                className="plot-tool"
+                aria-pressed={relative}
+                onClick={() => setNormalised(relative ? "no" : "yes")}
+              >
+                Normalise
+              </button>
+            )}
+            <button type="button" className="plot-tool" onClick={() => setDirection(imUp ? "down" : "up")}>
+              {imUp ? "−Im up" : "Im up"}
+            </button>
+          </>
         }
       />
       <div className="-my-2 md:hidden">{readout}</div>

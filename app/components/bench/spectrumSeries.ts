@@ -2,6 +2,7 @@
 import type { Bias, SpectrumResult, Technique } from "@demilune/solver";
 import type { SpectrumSeries } from "~/components/charts/spectrum";
 import { formatNumber, formatPrefixed, thinSpace } from "~/lib/numberFormat";
+import { scaledTo } from "~/lib/overlay";
 import { biasWords } from "~/lib/spectrumNames";
 
 /** A measured spectrum laid over the prediction. */
@@ -10,10 +11,15 @@ export interface Measurement {
   name: string;
   technique: Technique;
   bias: Bias | null;
+  fluxPerCm2S?: number | null;
   frequencyHz: readonly number[];
   re: readonly number[];
   im: readonly number[];
   masked?: readonly boolean[];
+  /** Only the shape is known: drawn at the prediction's size. */
+  relative?: boolean;
+  /** Made for the demo, not measured. */
+  invented?: boolean;
 }
 
 /** A curve that was held: what it showed, and the document it came from. */
@@ -37,11 +43,11 @@ export function pointWords(spectrum: SpectrumResult): string {
 const hertz = (frequency: number) => formatPrefixed(frequency, "Hz");
 
 function measuredSeries(measurement: Measurement, position: number, count: number): SpectrumSeries {
-  const { id, name, frequencyHz, re, im, masked } = measurement;
+  const { id, name, frequencyHz, re, im, masked, relative, invented } = measurement;
   const range = frequencyHz.length ? `, ${hertz(Math.min(...frequencyHz))} to ${hertz(Math.max(...frequencyHz))}` : "";
   return {
     id: `measured:${id}`,
-    label: `measured, ${name}${range}`,
+    label: `${invented ? "invented data" : "measured"}, ${name}${range}${relative ? ", scaled" : ""}`,
     kind: "measured",
     frequencyHz,
     re,
@@ -69,7 +75,10 @@ export function seriesOf(
     }
   }
   const own = measurements.filter(({ technique }) => technique === spectrum?.technique);
-  series.push(...own.map((measurement, position) => measuredSeries(measurement, position, own.length)));
+  for (const [position, measurement] of own.entries()) {
+    const drawn = measuredSeries(measurement, position, own.length);
+    series.push(measurement.relative && spectrum?.status === "solved" ? scaledTo(drawn, spectrum) : drawn);
+  }
   if (spectrum?.status === "solved") {
     const { frequencyHz, re, im } = spectrum;
     series.push({

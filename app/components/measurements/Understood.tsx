@@ -11,7 +11,7 @@ interface UnderstoodProps {
 }
 
 const control =
-  "rounded border border-transparent bg-transparent py-0.5 text-tide hover:border-rule focus:border-rule cursor-pointer max-w-full";
+  "rounded border border-transparent bg-transparent py-0.5 text-right text-tide hover:border-rule focus:border-rule cursor-pointer max-w-full [field-sizing:content]";
 
 function Correction({
   finding,

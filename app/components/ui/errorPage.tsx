@@ -4,6 +4,7 @@ import { Header } from "./header";
 const titles: Record<number, string> = {
   403: "Not in your role",
   404: "Not here",
+  410: "No longer here",
   429: "Too often",
 };
 

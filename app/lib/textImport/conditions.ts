@@ -1,4 +1,5 @@
 /** Technique, operating point and the quantities of the set-up: chosen by the person, said in the file, or assumed. */
+import { formatQuantity } from "~/lib/numberFormat";
 import { techniqueOfUnit } from "./convert";
 import type { Bias, Note, Notes, Technique } from "./notes";
 import type { Finding } from "./reading";
@@ -92,6 +93,6 @@ export function quantityFinding(
   resolved: Resolved<number | null>,
   unit: string,
 ): Finding {
-  const value = resolved.value === null ? null : `${Number(resolved.value.toPrecision(6))} ${unit}`;
+  const value = resolved.value === null ? null : formatQuantity(Number(resolved.value.toPrecision(6)), unit);
   return { key, label, value, reason: resolved.reason };
 }

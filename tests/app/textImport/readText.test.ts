@@ -58,7 +58,7 @@ describe("a file with modulus and phase, decimal comma and a talkative head", ()
     expect(reason(reading, "order")?.value).toBe("high to low frequency");
     expect(reason(reading, "phaseUnit")?.value).toBe("degrees");
     expect(reason(reading, "imaginarySign")?.value).toBe("as written");
-    expect(reason(reading, "areaCm2")).toMatchObject({ value: "0.16 cm²", reason: "from line 2" });
+    expect(reason(reading, "areaCm2")).toMatchObject({ value: "0.16\u2009cm²", reason: "from line 2" });
     expect(reason(reading, "fluxPerCm2S")?.reason).toBe("from line 2");
     expect(reading.sampleName).toBe("K-17");
     expect(reading.columns.map(({ role }) => role)).toEqual(["frequency", "modulus", "phase", "notUsed"]);

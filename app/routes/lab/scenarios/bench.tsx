@@ -11,12 +11,14 @@ import {
 } from "react-router";
 import { Bench } from "~/components/bench/Bench";
 import { Faults } from "~/components/bench/Messages";
+import { OverlayPanel } from "~/components/bench/OverlayPanel";
 import { SaveRevision } from "~/components/bench/SaveRevision";
 import { useBenchDocument } from "~/components/bench/useBenchDocument";
 import { useDraft } from "~/components/bench/useDraft";
 import { Moment } from "~/components/ui/moment";
 import { countDifferences } from "~/lib/documentNumbers";
 import { formatFixed } from "~/lib/numberFormat";
+import { listAttachable, listOverlays } from "~/models/overlays.server";
 import { findRun } from "~/models/runs.server";
 import { dropDraft, findDraft, findRevision, findScenario, saveDraft, saveRevision } from "~/models/scenarios.server";
 import { canActAs, notFound, requireLab } from "~/services/authorisation.server";
@@ -37,6 +39,7 @@ export async function loader(args: Route.LoaderArgs) {
   if (!scenario || !revision || !latest) throw notFound();
   const drafted = number === undefined && draft ? scenarioSchema.safeParse(draft.document) : undefined;
   const document = drafted?.success ? drafted.data : revision.document;
+  const [overlays, attachable] = await Promise.all([listOverlays(lab.id, scenarioId), listAttachable(lab.id)]);
   const run =
     (await keptRunOf(lab.id, document)) ?? (drafted?.success ? undefined : await findRun(lab.id, revision.hash));
   return {
@@ -50,6 +53,8 @@ export async function loader(args: Route.LoaderArgs) {
     result: run?.result ?? quickPrediction(document),
     run: run ? { outdated: run.outdated, solver: run.result.solver, finishedAt: run.finishedAt } : null,
     canEdit: canActAs(role, "researcher"),
+    overlays,
+    attachable,
   };
 }
 
@@ -188,6 +193,16 @@ function BenchOf({ loaderData, params }: Pick<Route.ComponentProps, "loaderData"
         name={scenario.name}
         bench={bench}
         initialResult={loaderData.result}
+        measurements={loaderData.overlays}
+        besideBelow={
+          <OverlayPanel
+            labId={params.labId}
+            scenarioId={params.scenarioId}
+            attached={loaderData.overlays}
+            attachable={loaderData.attachable}
+            readOnly={!canEdit}
+          />
+        }
         fixedStructure={!editable}
         status={status}
         actions={
@@ -199,6 +214,11 @@ function BenchOf({ loaderData, params }: Pick<Route.ComponentProps, "loaderData"
                   {computing ? "Computing …" : "Compute and keep"}
                 </button>
               </Form>
+            )}
+            {canEdit && (
+              <Link className="action py-0.5" to={href("/lab/:labId/scenarios/:scenarioId/shares", params)}>
+                Share
+              </Link>
             )}
             <a className="action" href={latest ? csv : `${csv}?revision=${revision.number}`} download>
               CSV
