@@ -43,6 +43,11 @@ export const matrix: Record<string, Row> = {
   "routes/lab/index": { GET: viewer },
   "routes/lab/people": { GET: viewer },
   "routes/lab/activity": { GET: viewer },
+  "routes/lab/scenarios/overlays": { POST: researcher },
+  "routes/lab/scenarios/shares": { GET: researcher, POST: researcher },
+  "routes/shared/open": { GET: { needed: "everybody", answer: 404 } },
+  "routes/shared/guest": { GET: { needed: "everybody", answer: 404 } },
+  "routes/shared/copy": { POST: { needed: "signedIn", answer: 404 } },
   "routes/lab/measurements/list": { GET: viewer },
   "routes/lab/measurements/import": { GET: researcher, POST: researcher },
   "routes/lab/measurements/measurement": { GET: viewer, POST: researcher },
@@ -84,6 +89,8 @@ async function sampleOf(lab: LabWorld): Promise<string | undefined> {
 /** Where the value of a path's parameter comes from. */
 export const parameters: Record<string, (lab: LabWorld) => Promise<string | undefined>> = {
   "*": async () => "no/such/page",
+  token: async () => "a-secret-that-was-never-made",
+  shareId: async () => "01JZZZZZZZZZZZZZZZZZZZZZZZ",
   measurementId: measurementOf,
   sampleId: sampleOf,
   scenarioId: (lab) => lab.select("SELECT id FROM scenarios WHERE lab_id = ? ORDER BY id LIMIT 1"),
