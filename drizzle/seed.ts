@@ -2,7 +2,7 @@
 import { demoLabName } from "~/models/demo.server";
 import { createLab, findLabByName, type Role } from "~/models/labs.server";
 import { ensureUser } from "~/models/users.server";
-import { seedScenarios } from "./seedScenarios";
+import { seedMaterials, seedScenarios } from "./seedScenarios";
 
 const invented: { lab: string; people: { email: string; name: string; role: Role }[] }[] = [
   {
@@ -27,5 +27,6 @@ export async function seedDemo(): Promise<void> {
     );
     const lab = (await findLabByName(name)) ?? (await createLab(name, members, { invented: true }));
     await seedScenarios(lab.id, members[0].userId);
+    await seedMaterials(lab.id, members[0].userId);
   }
 }

@@ -47,6 +47,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
     if (next !== fluxPerCm2S || !live) onChange(next, { live });
   }
   function commit() {
+    if (text === null) return;
     setChecked(true);
     if (!reading?.ok || typeof reading.value !== "number") return;
     setText(null);
@@ -61,7 +62,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
       event.preventDefault();
       const direction = event.key === "ArrowUp" ? 1 : -1;
       change(stepped(fluxPerCm2S, quantities.fluxPerCm2S, direction, event.shiftKey), false);
-    } else if (event.key === "Enter" && text !== null) {
+    } else if (event.key === "Enter") {
       event.preventDefault();
       commit();
     } else if (event.key === "Escape" && text !== null) {

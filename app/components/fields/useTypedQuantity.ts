@@ -17,14 +17,16 @@ interface TypedQuantityOptions {
   fallback?: FieldValue;
   emptyMeans?: string;
   onChange: (value: FieldValue, step: ChangeStep) => void;
+  /** Typed text to begin with, where a failed save gave it back. */
+  startText?: string;
 }
 
 /**
  * The life of a number field: what is typed stays until it can be read, Enter and blur commit, Escape restores,
  * arrows step by 10^0.1, with Shift by 10^0.01, page keys by a decade.
  */
-export function useTypedQuantity({ quantity, value, fallback, emptyMeans, onChange }: TypedQuantityOptions) {
-  const [text, setText] = useState<string | null>(null);
+export function useTypedQuantity({ quantity, value, fallback, emptyMeans, onChange, startText }: TypedQuantityOptions) {
+  const [text, setText] = useState<string | null>(startText ?? null);
   const [checked, setChecked] = useState(false);
   const reading: Reading | null = text === null ? null : readQuantity(text, quantity, emptyMeans);
   const shown = text ?? (typeof value === "number" ? typedForm(value) : "");
@@ -66,7 +68,8 @@ export function useTypedQuantity({ quantity, value, fallback, emptyMeans, onChan
         if (present !== null) change(moved(present, quantity, direction), false);
         break;
       case "Enter":
-        if (text !== null) event.preventDefault();
+        // Inside a form Enter settles the number and does not send the form.
+        event.preventDefault();
         commit();
         break;
       case "Escape":

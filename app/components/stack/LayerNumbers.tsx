@@ -36,6 +36,11 @@ export function LayerNumbers({ document, index, onChange, readOnly, held }: Laye
               live: true,
             })
           }
+          onKeyDown={(event) => {
+            if (event.key !== "Enter") return;
+            event.preventDefault();
+            event.currentTarget.blur();
+          }}
           onBlur={() => onChange(document, { path: `stack.layers.${index}.name`, live: false })}
         />
       </div>

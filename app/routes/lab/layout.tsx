@@ -27,7 +27,9 @@ export default function LabLayout({ loaderData: { lab, role } }: Route.Component
           {lab.name}
         </NavigationLink>
         <nav aria-label="Lab" className="flex flex-wrap gap-x-5">
+          <NavigationLink to={href("/lab/:labId/scenarios", { labId })}>Scenarios</NavigationLink>
           <NavigationLink to={href("/lab/:labId/measurements", { labId })}>Measurements</NavigationLink>
+          <NavigationLink to={href("/lab/:labId/materials", { labId })}>Materials</NavigationLink>
           <NavigationLink to={href("/lab/:labId/people", { labId })}>People</NavigationLink>
           <NavigationLink to={href("/lab/:labId/activity", { labId })}>Activity</NavigationLink>
         </nav>

@@ -56,6 +56,16 @@ export const matrix: Record<string, Row> = {
   "routes/lab/samples/sample": { GET: viewer, POST: researcher },
   "routes/lab/scenarios/bench": { GET: viewer, POST: { needed: "researcher", form: { intent: "discard" } } },
   "routes/lab/scenarios/predictionCsv": { GET: viewer },
+  "routes/lab/scenarios/list": { GET: viewer, POST: researcher },
+  "routes/lab/scenarios/new": { GET: researcher, POST: researcher },
+  "routes/lab/scenarios/stack": { GET: viewer, POST: researcher },
+  "routes/lab/scenarios/revisions": { GET: viewer, POST: researcher },
+  "routes/lab/scenarios/revision": { GET: viewer },
+  "routes/lab/scenarios/difference": { GET: viewer },
+  "routes/lab/scenarios/document": { GET: viewer },
+  "routes/lab/materials/list": { GET: viewer, POST: researcher },
+  "routes/lab/materials/new": { GET: researcher, POST: researcher },
+  "routes/lab/materials/material": { GET: viewer, POST: researcher },
 };
 
 export interface LabWorld {
@@ -94,4 +104,6 @@ export const parameters: Record<string, (lab: LabWorld) => Promise<string | unde
   measurementId: measurementOf,
   sampleId: sampleOf,
   scenarioId: (lab) => lab.select("SELECT id FROM scenarios WHERE lab_id = ? ORDER BY id LIMIT 1"),
+  materialId: (lab) => lab.select("SELECT id FROM materials WHERE lab_id = ? ORDER BY created_at LIMIT 1"),
+  number: async () => "1",
 };
