@@ -6,70 +6,91 @@ import {
   hashOf,
   parseScenario,
   type ResolvedScenario,
-  type ResultDocument,
   resultFormatName,
   type ScenarioDocument,
   ScenarioError,
+  type SolverMemory,
   type SpectrumResult,
   solve,
   solverVersion,
   solveSpectra,
   type Warning,
 } from "@demilune/solver";
-import type { SolveAnswer, SolveRequest } from "./solverMessages";
+import type { NumberedRequest } from "./latestWins";
+import { breath, serveLatest } from "./serveLatest";
+import type { SolveAnswer, SolveQuestion } from "./solverMessages";
 
-let latest: SolveRequest | null = null;
-let running = false;
+const post = (answer: SolveAnswer) => self.postMessage(answer);
 
-/** Spectra that share an operating point share its steady state and are solved together; the shown one's come first. */
-function operatingPoints({ spectra, model }: ResolvedScenario, shown: number): number[][] {
-  if (model.kind !== "driftDiffusion") return [spectra.map((_, index) => index)];
-  const groups = new Map<string, number[]>();
-  for (const [index, { bias, fluxPerCm2S }] of spectra.entries()) {
-    const key = JSON.stringify([bias, fluxPerCm2S]);
-    groups.set(key, [...(groups.get(key) ?? []), index]);
-  }
-  return [...groups.values()].sort((one, other) => Number(other.includes(shown)) - Number(one.includes(shown)));
+interface Group {
+  key: string;
+  /** Indices of the spectra. */
+  members: number[];
 }
 
-const channel = new MessageChannel();
-/** Let messages that have arrived be handled. */
-const breath = () =>
-  new Promise<void>((resolve) => {
-    channel.port1.onmessage = () => resolve();
-    channel.port2.postMessage(null);
-  });
+/** Spectra that share an operating point share its steady state and are solved together; the shown one's come first. */
+function operatingPoints({ spectra, model }: ResolvedScenario, shown: number): Group[] {
+  if (model.kind !== "driftDiffusion") return [{ key: "all", members: spectra.map((_, index) => index) }];
+  const groups = new Map<string, number[]>();
+  for (const [index, { bias, fluxPerCm2S }] of spectra.entries()) {
+    const key = JSON.stringify(bias === "openCircuit" ? [bias, fluxPerCm2S] : [bias]);
+    groups.set(key, [...(groups.get(key) ?? []), index]);
+  }
+  return [...groups]
+    .map(([key, members]) => ({ key, members }))
+    .sort((one, other) => Number(other.members.includes(shown)) - Number(one.members.includes(shown)));
+}
 
-async function answer(request: SolveRequest, post: (message: SolveAnswer) => void): Promise<void> {
+/** The states each operating point was left in: the next document begins there. */
+const memories = new Map<string, SolverMemory>();
+/** Operating points that are remembered at most. */
+const mostMemories = 50;
+
+function memoryOf(key: string): SolverMemory {
+  const known = memories.get(key);
+  if (known) return known;
+  if (memories.size >= mostMemories) memories.clear();
+  const fresh = { points: null };
+  memories.set(key, fresh);
+  return fresh;
+}
+
+type SolveRequest = SolveQuestion & NumberedRequest;
+
+const { asked } = serveLatest<SolveRequest>(async ({ sequence, document, shown }, isLatest) => {
   const start = performance.now();
-  const { sequence } = request;
   const elapsed = () => performance.now() - start;
   try {
-    const scenario = parseScenario(request.document);
+    const scenario = parseScenario(document);
     const spectra: (SpectrumResult | null)[] = scenario.spectra.map(() => null);
     const warnings: Warning[] = [];
-    for (const [position, group] of operatingPoints(scenario, request.shown).entries()) {
+    for (const [position, { key, members }] of operatingPoints(scenario, shown).entries()) {
       if (position > 0) {
-        post({ kind: "partly", sequence, milliseconds: elapsed(), spectra: [...spectra] });
+        post({ kind: "partly", more: true, sequence, milliseconds: elapsed(), spectra: [...spectra] });
         await breath();
-        if (latest !== request) return;
+        if (!isLatest()) return;
       }
-      const part = solveSpectra({ ...scenario, spectra: group.map((index) => scenario.spectra[index]) });
-      for (const [place, index] of group.entries()) spectra[index] = part.spectra[place];
+      const asked = { ...scenario, spectra: members.map((index) => scenario.spectra[index]) };
+      const part = solveSpectra(asked, { memory: memoryOf(key) });
+      for (const [place, index] of members.entries()) spectra[index] = part.spectra[place];
       for (const warning of part.warnings)
         if (!warnings.some(({ path, message }) => path === warning.path && message === warning.message))
           warnings.push(warning);
     }
     const solved = spectra as SpectrumResult[];
-    const result: ResultDocument = {
-      format: resultFormatName,
-      solver: solverVersion,
-      hash: hashOf(scenario),
-      status: solved.every(({ status }) => status === "solved") ? "solved" : "notSolved",
-      warnings,
-      spectra: solved,
-    };
-    post({ kind: "solved", sequence, milliseconds: elapsed(), result });
+    post({
+      kind: "solved",
+      sequence,
+      milliseconds: elapsed(),
+      result: {
+        format: resultFormatName,
+        solver: solverVersion,
+        hash: hashOf(scenario),
+        status: solved.every(({ status }) => status === "solved") ? "solved" : "notSolved",
+        warnings,
+        spectra: solved,
+      },
+    });
   } catch (error) {
     if (error instanceof ScenarioError)
       post({ kind: "refused", sequence, milliseconds: elapsed(), faults: error.faults });
@@ -81,19 +102,7 @@ async function answer(request: SolveRequest, post: (message: SolveAnswer) => voi
         message: error instanceof Error ? error.message : String(error),
       });
   }
-}
-
-self.onmessage = async ({ data }: MessageEvent<SolveRequest>) => {
-  latest = data;
-  if (running) return;
-  running = true;
-  for (let request = latest; ; request = latest) {
-    await answer(request, (message) => self.postMessage(message));
-    await breath();
-    if (latest === request) break;
-  }
-  running = false;
-};
+});
 
 const warmUpLayer = {
   thicknessNm: 300,
@@ -119,7 +128,7 @@ for (const kind of ["gaertner", "diffusion", "driftDiffusion"] as const) {
     frequencies: { fromHz: 1, toHz: 1e6, pointsPerDecade: 5 },
   };
   try {
-    for (let turn = 0; turn < 3 && !latest; turn++) solve(document);
+    for (let turn = 0; turn < 3 && !asked(); turn++) solve(document);
   } catch (error) {
     // A model may refuse this device; warming up must not keep the worker from serving.
     if (!(error instanceof ScenarioError)) throw error;

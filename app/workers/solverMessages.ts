@@ -1,19 +1,53 @@
-/** What the page and its solver worker say to each other. */
-import type { Fault, ResultDocument } from "@demilune/solver";
+/** What the page and its workers say to each other. */
+import type {
+  Bias,
+  CurrentVoltageCurve,
+  Fault,
+  HarmonicProfiles,
+  Profiles,
+  ResultDocument,
+  SpectrumResult,
+  Technique,
+} from "@demilune/solver";
+import type { NumberedAnswer } from "./latestWins";
 
-export interface SolveRequest {
-  /** Counts up; an answer with a lower number than the last request is out of date. */
-  sequence: number;
+export interface SolveQuestion {
   /** A scenario document, checked by the worker. */
   document: unknown;
   /** Index of the spectrum on screen: its operating point is solved first. */
   shown: number;
 }
 
-export type SolveAnswer = { sequence: number; milliseconds: number } & (
-  | { kind: "solved"; result: ResultDocument }
-  /** The spectra solved so far; others are null. */
-  | { kind: "partly"; spectra: (ResultDocument["spectra"][number] | null)[] }
+type Refusal =
   | { kind: "refused"; faults: readonly Fault[] }
-  | { kind: "defect"; message: string }
-);
+  /** A defect of the solver, said as it came. */
+  | { kind: "defect"; message: string };
+
+export type SolveAnswer = NumberedAnswer & { milliseconds: number } & (
+    | { kind: "solved"; result: ResultDocument }
+    /** The spectra solved so far; others are null. */
+    | { kind: "partly"; more: true; spectra: (SpectrumResult | null)[] }
+    | Refusal
+  );
+
+interface At {
+  bias: Bias;
+  fluxPerCm2S: number;
+}
+
+/** Slower questions about one scenario, and what answers them. */
+export interface Details {
+  /** Under the scenario's light and in the dark. */
+  currentVoltage: { ask: object; answer: { light: CurrentVoltageCurve; dark: CurrentVoltageCurve } };
+  profiles: { ask: At; answer: Profiles };
+  harmonicProfiles: { ask: At & { technique: Technique; frequencyHz: number }; answer: HarmonicProfiles };
+  /** One spectrum of the document by another model. */
+  otherModel: { ask: { shown: number; model: unknown }; answer: SpectrumResult };
+}
+export type DetailName = keyof Details;
+
+export type DetailQuestion = { document: unknown } & {
+  [Name in DetailName]: { name: Name } & Details[Name]["ask"];
+}[DetailName];
+
+export type DetailAnswer = NumberedAnswer & ({ kind: "answered"; value: Details[DetailName]["answer"] } | Refusal);

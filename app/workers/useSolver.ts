@@ -1,7 +1,7 @@
 import type { Fault, ResultDocument, ScenarioDocument, SpectrumResult } from "@demilune/solver";
 import { useEffect, useRef, useState } from "react";
-import { SolverClient } from "./solverClient";
-import type { SolveAnswer } from "./solverMessages";
+import { LatestWins } from "./latestWins";
+import type { SolveAnswer, SolveQuestion } from "./solverMessages";
 
 export interface Solved {
   /** The latest spectra, some of an earlier document while `busy`; null before the first. */
@@ -35,11 +35,15 @@ export function useSolver(document: ScenarioDocument, initial: ResultDocument | 
     faults: [],
     defect: null,
   });
-  const client = useRef<SolverClient | null>(null);
+  const client = useRef<LatestWins<SolveQuestion, SolveAnswer> | null>(null);
   const shownNow = useRef(shown);
 
   useEffect(() => {
-    client.current = new SolverClient(startWorker, (answer) => setSolved((previous) => taken(previous, answer)));
+    client.current = new LatestWins(
+      startWorker,
+      (answer) => setSolved((previous) => taken(previous, answer)),
+      (defect) => setSolved((previous) => ({ ...previous, busy: false, defect })),
+    );
     return () => client.current?.close();
   }, []);
 
@@ -48,7 +52,7 @@ export function useSolver(document: ScenarioDocument, initial: ResultDocument | 
   }, [shown]);
 
   useEffect(() => {
-    client.current?.solve(document, shownNow.current);
+    client.current?.ask({ document, shown: shownNow.current });
     setSolved((previous) => (previous.busy ? previous : { ...previous, busy: true }));
   }, [document]);
 

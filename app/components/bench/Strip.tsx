@@ -1,3 +1,4 @@
+import { useMediaQuery } from "~/components/ui/useMediaQuery";
 import { panes } from "./panes";
 import type { PaneContext } from "./panes/pane";
 import { Tabs } from "./Tabs";
@@ -11,8 +12,9 @@ export function Strip(context: PaneContext) {
     0,
     offered.findIndex(({ id }) => id === wanted),
   );
+  const wide = useMediaQuery("(min-width: 80rem)");
   const beside = chosen + 1 < offered.length ? chosen + 1 : chosen - 1;
-  const shown = [chosen, beside].filter((index) => index >= 0).sort((one, other) => one - other);
+  const shown = (wide ? [chosen, beside] : [chosen]).filter((index) => index >= 0).sort((one, other) => one - other);
   return (
     <section aria-label="Details" className="mt-6">
       <div className="border-line border-b">
@@ -33,7 +35,7 @@ export function Strip(context: PaneContext) {
               id={`details-pane-${id}`}
               role="tabpanel"
               aria-labelledby={`details-tab-${id}`}
-              className={`min-w-0 ${index === chosen ? "" : "max-xl:hidden"}`}
+              className="min-w-0"
             >
               <Content {...context} />
             </div>

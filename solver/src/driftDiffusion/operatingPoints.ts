@@ -45,7 +45,7 @@ export class OperatingPoints {
   readonly problem: Problem;
   private readonly options: Omit<SteadyOptions, "start">;
   private readonly known = new Map<string, OperatingPoint>();
-  private readonly previous: OperatingPoints | null;
+  private previous: OperatingPoints | null;
   private held: HeldIons | SteadyState | null = null;
   private latest: State | null = null;
 
@@ -71,9 +71,21 @@ export class OperatingPoints {
     return this.held;
   }
 
-  /** The state to begin from: the same operating point of the neighbouring cell, or the last one of this cell. */
-  private start(key: string): State | undefined {
-    const neighbour = this.previous?.known.get(key);
+  /** Let the neighbouring cell go: a chain of them would keep every state there ever was. */
+  forgetPrevious(): void {
+    this.previous = null;
+  }
+
+  /**
+   * The state to begin from: the same operating point of the neighbouring cell, one of the same kind (its light or its
+   * voltage may be what moved), or the last one of this cell.
+   */
+  private start(key: string, bias: Bias): State | undefined {
+    const neighbour =
+      this.previous?.known.get(key) ??
+      [...(this.previous?.known.values() ?? [])].findLast(
+        (point) => typeof point.bias === typeof bias && (typeof bias === "object" || point.bias === bias),
+      );
     if (neighbour?.steady.status === "solved") {
       const moved = transferState(neighbour.problem, neighbour.steady.state, this.problem);
       if (moved) return moved;
@@ -96,7 +108,7 @@ export class OperatingPoints {
             problem,
             operation,
             { flux: fluxToSI(fluxPerCm2S), heldIons: ions },
-            { ...this.options, start: this.start(JSON.stringify([bias, fluxPerCm2S])) },
+            { ...this.options, start: this.start(key, bias) },
           );
     if (steady.status === "solved") this.latest = steady.state;
     const inside = steady.state.voltage * problem.thermalVoltage;

@@ -69,6 +69,7 @@ export function solveDriftDiffusion(
       im,
     };
   });
+  points.forgetPrevious();
   if (memory) memory.points = points;
   return { spectra, warnings };
 }

@@ -1,27 +1,37 @@
-import type { SolveAnswer, SolveRequest } from "./solverMessages";
-
-/** A worker that stays silent for so long while a newer document waits is stuck in an old one, ms. */
+/** A worker that stays silent for so long while something newer waits is stuck in what is old, ms. */
 const patience = 3000;
 
 /** What the client needs of a Web Worker. */
 export type WorkerLike = Pick<Worker, "postMessage" | "terminate" | "onmessage" | "onerror">;
 
-/** Talks to one solver worker: the latest document wins, late answers are dropped, a stuck worker is replaced. */
-export class SolverClient {
+export interface NumberedRequest {
+  /** Counts up; an answer with a lower number than the last request is out of date. */
+  sequence: number;
+}
+
+export interface NumberedAnswer {
+  sequence: number;
+  /** More of the same answer follows. */
+  more?: boolean;
+}
+
+/** Talks to one worker: the latest request wins, late answers are dropped, a stuck worker is replaced. */
+export class LatestWins<Question extends object, Answer extends NumberedAnswer> {
   private worker: WorkerLike;
-  private latest: SolveRequest | null = null;
+  private latest: (Question & NumberedRequest) | null = null;
   private outstanding = false;
   private timer: ReturnType<typeof setTimeout> | undefined;
 
   constructor(
     private readonly createWorker: () => WorkerLike,
-    private readonly onAnswer: (answer: SolveAnswer) => void,
+    private readonly onAnswer: (answer: Answer) => void,
+    private readonly onDefect: (message: string) => void,
   ) {
     this.worker = this.connect();
   }
 
-  solve(document: unknown, shown: number): void {
-    this.latest = { sequence: (this.latest?.sequence ?? 0) + 1, document, shown };
+  ask(question: Question): void {
+    this.latest = { ...question, sequence: (this.latest?.sequence ?? 0) + 1 };
     this.worker.postMessage(this.latest);
     if (this.outstanding) this.timer ??= setTimeout(() => this.replace(), patience);
     this.outstanding = true;
@@ -34,17 +44,16 @@ export class SolverClient {
 
   private connect(): WorkerLike {
     const worker = this.createWorker();
-    worker.onmessage = ({ data }: MessageEvent<SolveAnswer>) => {
+    worker.onmessage = ({ data }: MessageEvent<Answer>) => {
       clearTimeout(this.timer);
       this.timer = undefined;
       if (data.sequence !== this.latest?.sequence) return;
-      if (data.kind !== "partly") this.outstanding = false;
+      if (!data.more) this.outstanding = false;
       this.onAnswer(data);
     };
     worker.onerror = (event: ErrorEvent) => {
       this.outstanding = false;
-      const message = event.message || "The solver could not be loaded.";
-      this.onAnswer({ kind: "defect", sequence: this.latest?.sequence ?? 0, milliseconds: 0, message });
+      this.onDefect(event.message || "The solver could not be loaded.");
     };
     return worker;
   }

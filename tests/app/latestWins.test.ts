@@ -1,35 +1,34 @@
 import { afterEach, beforeEach, describe, expect, it, vi } from "vitest";
-import { SolverClient, type WorkerLike } from "~/workers/solverClient";
-import type { SolveAnswer, SolveRequest } from "~/workers/solverMessages";
+import { LatestWins, type NumberedRequest, type WorkerLike } from "~/workers/latestWins";
 
 /** A worker whose answers the test gives by hand. */
 class ScriptedWorker implements WorkerLike {
   onmessage: WorkerLike["onmessage"] = null;
   onerror: WorkerLike["onerror"] = null;
-  readonly requests: SolveRequest[] = [];
+  readonly requests: (NumberedRequest & { document: string })[] = [];
   ended = false;
   postMessage(request: unknown) {
-    this.requests.push(request as SolveRequest);
+    this.requests.push(request as NumberedRequest & { document: string });
   }
   terminate() {
     this.ended = true;
   }
   answer(sequence: number) {
-    const data: SolveAnswer = { kind: "refused", sequence, milliseconds: 1, faults: [] };
-    this.onmessage?.call(this as unknown as Worker, new MessageEvent("message", { data }));
+    this.onmessage?.call(this as unknown as Worker, new MessageEvent("message", { data: { sequence } }));
   }
 }
 
-describe("the client of the solver worker", () => {
+describe("the client of a worker", () => {
   let workers: ScriptedWorker[];
   let answers: number[];
   const start = () =>
-    new SolverClient(
+    new LatestWins<{ document: string }, NumberedRequest>(
       () => {
         workers.push(new ScriptedWorker());
         return workers[workers.length - 1];
       },
       ({ sequence }) => answers.push(sequence),
+      () => answers.push(-1),
     );
 
   beforeEach(() => {
@@ -41,8 +40,8 @@ describe("the client of the solver worker", () => {
 
   it("passes on answers to the latest document only", () => {
     const client = start();
-    client.solve("one", 0);
-    client.solve("two", 0);
+    client.ask({ document: "one" });
+    client.ask({ document: "two" });
     workers[0].answer(1);
     expect(answers).toEqual([]);
     workers[0].answer(2);
@@ -51,8 +50,8 @@ describe("the client of the solver worker", () => {
 
   it("replaces a worker that is stuck while a newer document waits, and asks again", () => {
     const client = start();
-    client.solve("one", 0);
-    client.solve("two", 0);
+    client.ask({ document: "one" });
+    client.ask({ document: "two" });
     vi.advanceTimersByTime(3000);
     expect(workers[0].ended).toBe(true);
     expect(workers[1].requests.map(({ document }) => document)).toEqual(["two"]);
@@ -61,7 +60,7 @@ describe("the client of the solver worker", () => {
   });
 
   it("lets a long solve end while nothing newer waits", () => {
-    start().solve("one", 0);
+    start().ask({ document: "one" });
     vi.advanceTimersByTime(60_000);
     expect(workers[0].ended).toBe(false);
   });
