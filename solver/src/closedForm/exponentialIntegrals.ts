@@ -28,7 +28,7 @@ export function meanDecay(w: Complex): Complex {
 }
 
 /** ∫₀¹ e^{−a u − z (1−u)} du = (e^{−a} − e^{−z})/(z − a). */
-export function decayBetween(a: number, z: Complex): Complex {
+function decayBetween(a: number, z: Complex): Complex {
   if (a <= z.re) return scale(meanDecay(subtract(z, complex(a))), Math.exp(-a));
   return multiply(exponential(scale(z, -1)), meanDecay(subtract(complex(a), z)));
 }
