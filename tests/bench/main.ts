@@ -9,7 +9,8 @@ export type Bench = (say: (line: string) => void) => object | Promise<object>;
 
 const benches: Record<string, () => Promise<{ run: Bench }>> = {
   yardstick: () => import("./yardstick.ts"),
-  harmonic: () => import("./harmonic.ts"),
+  smallSignal: () => import("./smallSignal.ts"),
+  closedForm: () => import("./closedForm.ts"),
   drag: () => import("./drag.ts"),
 };
 

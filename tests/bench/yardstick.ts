@@ -1,14 +1,17 @@
 /**
  * Speed of the full model on the yardstick's scenario beside the C program, in the same minute on the same core.
  *
- *   smallSignalMs     all 61 frequencies, light and voltage, from the linearised system to the answer at the cut
+ *   smallSignalMs     linearisation, and all 61 frequencies solved for light and voltage, with the spread over depth
  *   coldFirstCallMs   the first such call of a fresh process, the kernel's compilation included
+ *   steadyColdMs      short circuit under light from nothing, mesh included
+ *   steadyWarmMs      the same after the hole lifetime moved by a twentieth
  */
 import { execFileSync } from "node:child_process";
 import { fileURLToPath } from "node:url";
-import { harmonicSolver } from "../../solver/src/linearAlgebra/harmonicSolver.ts";
+import { respond } from "../../solver/src/driftDiffusion/smallSignal.ts";
 import { time, words } from "./timing.ts";
-import { buildYardstick, yardstickFolder, yardstickSystem } from "./yardstickFiles.ts";
+import { linearisedYardstick, solveSteadily, yardstickScenario } from "./yardstickCell.ts";
+import { buildYardstick, yardstickFolder } from "./yardstickFiles.ts";
 
 export interface Yardstick {
   smallSignalMs: number | null;
@@ -18,17 +21,6 @@ export interface Yardstick {
   coldFirstCallMs: number | null;
   steadyColdMs: number | null;
   steadyWarmMs: number | null;
-}
-
-/** The small-signal part as the product runs it. */
-function smallSignal(folder: string): () => void {
-  const { system, angularFrequencies } = yardstickSystem(folder);
-  const voltage = system.rightHandSides[1];
-  const cut = {
-    firstNode: Math.floor(voltage.findIndex((value) => value !== 0) / system.blockSize),
-    lastNode: Math.floor(voltage.findLastIndex((value) => value !== 0) / system.blockSize),
-  };
-  return () => harmonicSolver(system).solve(angularFrequencies, cut);
 }
 
 export function run(say: (line: string) => void): Yardstick {
@@ -46,13 +38,27 @@ export function run(say: (line: string) => void): Yardstick {
     say("skipped: no yardstick beside the repository or in YARDSTICK_DIR");
     return result;
   }
+  const { linearise, frequencies } = linearisedYardstick(folder);
   const program = buildYardstick(folder);
   const before = program?.run();
-  const timing = time(smallSignal(folder), { runs: 41 });
+  const timing = time(() => respond(linearise(), frequencies), { runs: 41 });
   const after = program?.run();
   program?.remove();
   result.smallSignalMs = timing.medianMs;
   say(`small signal: ${words(timing)}`);
+  const scenario = yardstickScenario(folder);
+  const cold = time(() => solveSteadily(scenario));
+  const neighbours = [scenario, yardstickScenario(folder, 157.5)];
+  let points = solveSteadily(scenario);
+  let turn = 0;
+  const warm = time(() => {
+    turn = 1 - turn;
+    points = solveSteadily(neighbours[turn], points);
+  });
+  result.steadyColdMs = cold.medianMs;
+  result.steadyWarmMs = warm.medianMs;
+  say(`steady state from nothing: ${words(cold)}`);
+  say(`steady state from a neighbour: ${words(warm)}`);
   result.coldFirstCallMs = Number(
     execFileSync(process.execPath, ["--import", "tsx", fileURLToPath(import.meta.url), "cold"], { encoding: "utf8" }),
   );
@@ -74,8 +80,8 @@ export function run(say: (line: string) => void): Yardstick {
 }
 
 if (process.argv[2] === "cold" && process.argv[1] === fileURLToPath(import.meta.url)) {
-  const call = smallSignal(yardstickFolder()!);
+  const { linearise, frequencies } = linearisedYardstick(yardstickFolder()!);
   const start = performance.now();
-  call();
+  respond(linearise(), frequencies);
   console.log(performance.now() - start);
 }

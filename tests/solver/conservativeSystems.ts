@@ -1,7 +1,15 @@
 /** Random conservative systems and their dense solution, for tests. */
 import { Matrix, solve } from "ml-matrix";
 import type { ConservativeSystem, Relaxation } from "../../solver/src/linearAlgebra/conservativeSystem.ts";
-import { randomNumbers } from "./harmonicSystems.ts";
+
+/** Uniform numbers in [0, 1): Park and Miller's minimal standard generator, Commun. ACM 31 (1988) 1192. */
+function randomNumbers(seed: number): () => number {
+  let state = seed;
+  return () => {
+    state = (state * 48271) % 2147483647;
+    return state / 2147483647;
+  };
+}
 
 export interface RandomSystemOptions {
   nodes: number;

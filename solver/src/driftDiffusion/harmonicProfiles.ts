@@ -8,16 +8,17 @@
  */
 import { atTerminals } from "../circuit.ts";
 import { elementaryCharge } from "../constants.ts";
+import { conservativeSolver } from "../linearAlgebra/conservativeSolver.ts";
+import type { Profiles } from "../linearAlgebra/conservativeSystem.ts";
 import { add, type Complex, complex, divide, multiply, one, scale } from "../numerics/complex.ts";
 import type { Failure } from "../result.ts";
 import { currentFromSI, fluxToSI } from "../scenario/device.ts";
 import type { Bias, Technique } from "../scenario/schema.ts";
 import { failureOf } from "./failures.ts";
 import { holdIons } from "./ions.ts";
-import { type Field, linearFluxes } from "./linearFluxes.ts";
 import type { OperatingPoint, OperatingPoints } from "./operatingPoints.ts";
 import { edgesToPoints, profilePoints } from "./profiles.ts";
-import { type Linearisation, linearise, solveRefined } from "./smallSignal.ts";
+import { type Linearisation, lightColumn, linearise, voltageColumn } from "./smallSignal.ts";
 import { boltzmann } from "./statistics.ts";
 
 /** Real and imaginary part over the points of the profiles. */
@@ -73,39 +74,35 @@ interface Inside {
   admittance: Complex;
 }
 
-function combined(fields: Field[], drives: Drives): Field {
-  const [light, voltage] = fields;
+/** Values of both drives, [drive][place][unknown], combined. */
+function combined({ real, imaginary }: Profiles["unknowns"], drives: Drives): ComplexProfile {
   const { re, im } = drives.voltage;
-  const count = light.re.length;
-  const sum: Field = { re: new Float64Array(count), im: new Float64Array(count), lowRe: null, lowIm: null };
+  const count = real.length / 2;
+  const sum = { re: new Float64Array(count), im: new Float64Array(count) };
   for (let k = 0; k < count; k++) {
-    sum.re[k] = drives.light * light.re[k] + re * voltage.re[k] - im * voltage.im[k];
-    sum.im[k] = drives.light * light.im[k] + re * voltage.im[k] + im * voltage.re[k];
+    const light = lightColumn * count + k;
+    const voltage = voltageColumn * count + k;
+    sum.re[k] = drives.light * real[light] + re * real[voltage] - im * imaginary[voltage];
+    sum.im[k] = drives.light * imaginary[light] + re * imaginary[voltage] + im * real[voltage];
   }
   return sum;
 }
 
-/** Currents on all edges, combined from those of light and voltage: [electrons, holes, ions, displacement]. */
-function edgeCurrents(linear: Linearisation, fields: Field[], drives: Drives, omega: number): ComplexProfile[] {
-  const { problem, system } = linear;
+/** Delivered currents on all edges: [electrons, holes, ions, displacement]. */
+function edgeCurrents({ problem, system }: Linearisation, fluxes: ComplexProfile, omega: number): ComplexProfile[] {
   const edges = problem.nodes - 1;
   const m = system.blockSize;
   const result = Array.from({ length: 4 }, () => ({ re: new Float64Array(edges), im: new Float64Array(edges) }));
-  const fluxes = { re: new Float64Array(m), im: new Float64Array(m) };
   const unit = currentFromSI(problem.sign * elementaryCharge);
+  const { weight, harmonicWeight } = system.reading;
   for (let e = 0; e < edges; e++)
-    fields.forEach((field, column) => {
-      linearFluxes(linear, field, e, column, fluxes);
-      const weight = scale(column === 0 ? complex(drives.light) : drives.voltage, unit);
-      for (let k = 0; k < m; k++) {
-        const flow =
-          k === 0 ? { re: omega * fluxes.im[0], im: -omega * fluxes.re[0] } : { re: fluxes.re[k], im: fluxes.im[k] };
-        const { re, im } = multiply(flow, weight);
-        const target = result[k === 0 ? 3 : Math.min(k - 1, 2)];
-        target.re[e] += re;
-        target.im[e] += im;
-      }
-    });
+    for (let k = 0; k < m; k++) {
+      const flow = complex(fluxes.re[e * m + k], fluxes.im[e * m + k]);
+      const { re, im } = multiply(flow, complex(unit * weight[k], unit * omega * harmonicWeight[k]));
+      const target = result[k === 0 ? 3 : Math.min(k - 1, 2)];
+      target.re[e] += re;
+      target.im[e] += im;
+    }
   return result;
 }
 
@@ -113,15 +110,16 @@ function profilesAt(point: OperatingPoint, technique: Technique, frequencyHz: nu
   const { problem, steady } = point;
   const linear = linearise(problem, steady.state, steady.drive);
   const omega = 2 * Math.PI * frequencyHz;
-  const solved = solveRefined(linear, omega);
-  if (!solved) return null;
-  const [light, voltage] = solved.map(({ reading }) => scale(complex(reading.re, reading.im), problem.sign));
+  const solver = conservativeSolver(linear.system);
+  const { unknowns, fluxes, status } = solver.profiles(omega);
+  const { real, imaginary } = solver.read([omega], { edge: linear.state.cut, everywhere: false });
+  if (status === "singular") return null;
+  const current = (column: number) => scale(complex(real[column], imaginary[column]), problem.sign);
   const drives = drivesOf(point, technique, frequencyHz, {
-    photocurrent: light,
-    admittance: scale(voltage, -elementaryCharge / problem.thermalVoltage),
+    photocurrent: current(lightColumn),
+    admittance: scale(current(voltageColumn), -elementaryCharge / problem.thermalVoltage),
   });
-  const fields = solved.map(({ field }) => field);
-  const total = combined(fields, drives);
+  const total = combined(unknowns, drives);
   const { state } = linear;
   const { layers, device } = problem;
   const m = linear.system.blockSize;
@@ -142,9 +140,11 @@ function profilesAt(point: OperatingPoint, technique: Technique, frequencyHz: nu
     const carries = (k: number) => (charge === 1 ? device.layers[k].cations : device.layers[k].anions) > 0;
     return species(charge, (i, k) => (unknown !== undefined && carries(k) ? densities[i] : 0), unknown ?? -1);
   };
-  const [electronCurrent, holeCurrent, ionCurrent, displacement] = edgeCurrents(linear, fields, drives, omega).map(
-    ({ re, im }) => ({ re: edgesToPoints(problem, points, re), im: edgesToPoints(problem, points, im) }),
-  );
+  const [electronCurrent, holeCurrent, ionCurrent, displacement] = edgeCurrents(
+    linear,
+    combined(fluxes, drives),
+    omega,
+  ).map(({ re, im }) => ({ re: edgesToPoints(problem, points, re), im: edgesToPoints(problem, points, im) }));
   return {
     status: "solved",
     frequencyHz,

@@ -12,12 +12,12 @@
  *
  * Source: W. Shockley, W. T. Read, Phys. Rev. 87, 835 (1952), with the occupancy's own charge kept in Poisson's equation.
  */
-import type { HarmonicRelaxation } from "../linearAlgebra/harmonicSystem.ts";
+import type { Relaxation } from "../linearAlgebra/conservativeSystem.ts";
 import type { Assembly, TrapSink } from "./assembly.ts";
 import type { Problem } from "./problem.ts";
 
 /** Collects one relaxation a piece and adds the capture at fixed occupancy to the diagonal blocks. */
-export function trapRelaxations(problem: Problem, target: Assembly, relaxations: HarmonicRelaxation[]): TrapSink {
+export function trapRelaxations(problem: Problem, target: Assembly, relaxations: Relaxation[]): TrapSink {
   const { pieceNode, pieceLayer, pieceWidth, layers, nodes } = problem;
   const m = target.blockSize;
   return {
