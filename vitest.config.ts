@@ -16,6 +16,7 @@ export default defineConfig({
           testTimeout: 30_000,
           hookTimeout: 60_000,
           globalSetup: "tests/support/build.ts",
+          setupFiles: "tests/support/environment.ts",
         },
       },
       {

@@ -85,7 +85,7 @@ export function write(...queries: [Query, ...Query[]]): Promise<ResultSet[]> {
 }
 
 /** Opens the file, takes a backup if it is about to change, applies what migrations are missing. Once, before listening. */
-export async function prepareDatabase(): Promise<void> {
+export async function prepareDatabase(migrationsFolder = join(projectFolder, "drizzle/migrations")): Promise<void> {
   const folder = settings().dataFolder;
   mkdirSync(folder, { recursive: true });
   const lock = join(folder, "migrating.lock");
@@ -97,7 +97,6 @@ export async function prepareDatabase(): Promise<void> {
       throw new Error(
         `The database cannot use write-ahead logging in ${folder} (journal mode "${mode}"); a network share?`,
       );
-    const migrationsFolder = join(projectFolder, "drizzle/migrations");
     const applied = await appliedMigrations(client);
     const known = readMigrationFiles({ migrationsFolder }).length;
     if (applied > known)
