@@ -1,5 +1,9 @@
 /** The public surface of the solver. */
 export { type Arc, type ArcAnalysis, arcsOf, type Curve } from "./analysis/arcs.ts";
+export type { KramersKronig } from "./analysis/kramersKronig.ts";
+export type { Measured } from "./analysis/measured.ts";
+export { type Drift, type Validation, validateMeasured } from "./analysis/validateMeasured.ts";
+export type { Verdict } from "./analysis/verdict.ts";
 export * from "./constants.ts";
 export { type CurrentVoltageCurve, type CurveRequest, currentVoltageCurve } from "./driftDiffusion/currentVoltage.ts";
 export { type ComplexProfile, type HarmonicProfiles, harmonicProfilesOf } from "./driftDiffusion/harmonicProfiles.ts";

@@ -45,6 +45,9 @@ export interface ElementFit {
   criterion: number;
 }
 
+/** Sharpest resonance that a search may use where the caller does not say. */
+const sharpest = 50;
+
 const formBounds: Record<Shape, [number, number] | null> = {
   relaxation: null,
   diffusion: null,
@@ -52,7 +55,7 @@ const formBounds: Record<Shape, [number, number] | null> = {
   transit: null,
   uniformTransit: null,
   depressed: [0.25, 1],
-  resonance: [0.5, 50],
+  resonance: [0.5, sharpest],
 };
 
 /** ωτ at which |Im| of a shape is largest: checks for the diffusive ones are tanh√(iu)/√(iu) and 1/cosh√(iu). */
@@ -177,10 +180,13 @@ export class ElementModel {
   private readonly fixed: Float64Array[];
   private readonly samples: Samples;
   private readonly background: Background;
+  private readonly sharpestResonance: number;
   private readonly trialColumns = new Map<Shape, { draft: Draft; column: Float64Array }[]>();
 
-  constructor(samples: Samples, background: Background) {
+  /** @param sharpestResonance largest Q of a resonance: a sharp one could imitate a single point */
+  constructor(samples: Samples, background: Background, sharpestResonance = sharpest) {
     this.samples = samples;
+    this.sharpestResonance = sharpestResonance;
     this.background = background;
     const count = samples.omega.length;
     this.target = this.column((k) => complex(samples.re[k], samples.im[k]));
@@ -230,7 +236,7 @@ export class ElementModel {
       if (bounds === null) return;
       start.push(draft.form);
       lower.push(bounds[0]);
-      upper.push(bounds[1]);
+      upper.push(draft.shape === "resonance" ? this.sharpestResonance : bounds[1]);
       owner.push(k);
     });
     const unpack = (parameters: Float64Array): Draft[] => {

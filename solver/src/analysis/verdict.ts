@@ -1,0 +1,2 @@
+/** What every check answers. */
+export type Verdict = "holds" | "marginal" | "fails" | "notTested";
