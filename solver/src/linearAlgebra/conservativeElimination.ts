@@ -6,7 +6,7 @@
  *   H, h     flux towards the nodes that remain = H x + h at the node reached so far    m × m, m × drives
  *   P, E     flux through the edge = P Δ + E x' + j⁰ with Δ = x' − x, P = C − E/2        m × m
  *   S        (P + H)⁻¹                                                                 m × m
- *   W, V, u  Δ = W x' + u and x = V x' − u: W = S (H − E), V = S (P + E), u = S (h − j⁰)   m × m, m × drives
+ *   W, u     Δ = W x' + u: W = S (H − E), u = S (h − j⁰)                                 m × m, m × drives
  */
 import {
   type ConservativeSolver,
@@ -158,7 +158,7 @@ export function eliminate(
   };
   const stepLaw = (e: number, direction: number) =>
     new Block(m, m).addReal(byStep, e * m * m, 1).addReal(byMean, e * m * m, -0.5 * direction);
-  const [W, V, u]: Block[][] = [[], [], []];
+  const [W, u]: Block[][] = [[], []];
 
   const sweep = (from: number, direction: number): { H: Block; h: Block } | null => {
     let H = new Block(m, m);
@@ -171,7 +171,6 @@ export function eliminate(
       if (!S) return null;
       const source = sourceIn(e, direction);
       W[i] = S.times(H.copy().addReal(byMean, e * m * m, -direction));
-      V[i] = S.times(P.copy().addReal(byMean, e * m * m, direction));
       u[i] = S.times(h.copy().add(source, -1));
       h = P.times(S.times(h)).add(H.times(S.times(source)));
       H = P.times(W[i]).addReal(byMean, e * m * m, direction);
@@ -194,7 +193,7 @@ export function eliminate(
       const ahead = unknowns[i + direction];
       const e = direction > 0 ? i : i - 1;
       const step = W[i].times(ahead).add(u[i]);
-      unknowns[i] = V[i].times(ahead).add(u[i], -1);
+      unknowns[i] = ahead.copy().add(step, -1);
       const mean = new Block(m, m).addReal(byMean, e * m * m, direction);
       const outward = stepLaw(e, direction).times(step).add(mean.times(ahead)).add(sourceIn(e, direction));
       fluxes[e] = new Block(m, sides).add(outward, direction);

@@ -52,9 +52,9 @@ function kernelOfThread(): Kernel | undefined {
   return instance === "unavailable" ? undefined : instance;
 }
 
-/** Frequency pairs in a batch: many fill the processor, few keep what substitution needs in its cache. */
+/** Frequency pairs in a batch: many fill the processor, one keeps what substitution needs in its cache. */
 const PAIRS_AT_AN_EDGE = 8;
-const PAIRS_EVERYWHERE = 2;
+const PAIRS_EVERYWHERE = 1;
 /** Doubles of a number at two frequencies. */
 const NUMBER = 4;
 

@@ -5,7 +5,7 @@
  *   H, h     flux towards the nodes that remain = H x + h at the node reached so far   m × m, sides × m numbers
  *   P, E     flux through the edge = P Δ + E x' + j⁰ with Δ = x' − x                    arrows of reals
  *   S        (P + H)⁻¹                                                                m × m numbers
- *   W, V, u  Δ = W x' + u and x = V x' − u: W = S (H − E), V = S (P + E), u = S (h − j⁰)  m × m, sides × m numbers
+ *   W, u     Δ = W x' + u: W = S (H − E), u = S (h − j⁰)                                m × m, sides × m numbers
  *
  * At the next node the flux is (E + P W) x' + P S h + H S j⁰, and its balance adds G + iωM + Σ c rᵀ/(d+iω) to H and takes b
  * from h. Conductances are never subtracted from sums of conductances, so a small H survives beside a large P: the block form of
@@ -18,7 +18,6 @@ import { invert } from "./inverse";
 import {
   blockBytes,
   blocks,
-  carries,
   edgeOf,
   factors,
   fieldBytes,
@@ -41,25 +40,67 @@ import {
   values,
 } from "./memory";
 
-/** target = Σ row[c] b[c]. */
+/** target = Σ row[c] b[c], the row of numbers given by its parts (x, y), b at distances of `stride`; m is a constant 3, 4 or 5. */
+// @ts-ignore: decorator
+@inline
+function sumOfProducts(
+  m: usize,
+  x0: v128,
+  y0: v128,
+  x1: v128,
+  y1: v128,
+  x2: v128,
+  y2: v128,
+  x3: v128,
+  y3: v128,
+  x4: v128,
+  y4: v128,
+  b: usize,
+  stride: usize,
+  target: usize,
+): void {
+  let u = realPart(b);
+  let v = imaginaryPart(b);
+  let re = minusProduct(f64x2.mul(x0, u), y0, v);
+  let im = plusProduct(f64x2.mul(x0, v), y0, u);
+  u = realPart(b + stride);
+  v = imaginaryPart(b + stride);
+  re = minusProduct(plusProduct(re, x1, u), y1, v);
+  im = plusProduct(plusProduct(im, x1, v), y1, u);
+  u = realPart(b + 2 * stride);
+  v = imaginaryPart(b + 2 * stride);
+  re = minusProduct(plusProduct(re, x2, u), y2, v);
+  im = plusProduct(plusProduct(im, x2, v), y2, u);
+  if (m > 3) {
+    u = realPart(b + 3 * stride);
+    v = imaginaryPart(b + 3 * stride);
+    re = minusProduct(plusProduct(re, x3, u), y3, v);
+    im = plusProduct(plusProduct(im, x3, v), y3, u);
+  }
+  if (m > 4) {
+    u = realPart(b + 4 * stride);
+    v = imaginaryPart(b + 4 * stride);
+    re = minusProduct(plusProduct(re, x4, u), y4, v);
+    im = plusProduct(plusProduct(im, x4, v), y4, u);
+  }
+  put(target, re, im);
+}
+
+/** target = Σ row[c] b[c] for m = 3, 4 or 5. */
 // @ts-ignore: decorator
 @inline
 export function dot(m: usize, row: usize, b: usize, target: usize): void {
-  let x = realPart(row);
-  let y = imaginaryPart(row);
-  let u = realPart(b);
-  let v = imaginaryPart(b);
-  let re = minusProduct(f64x2.mul(x, u), y, v);
-  let im = plusProduct(f64x2.mul(x, v), y, u);
-  for (let c: usize = 1; c < m; c++) {
-    x = realPart(row + c * NUMBER);
-    y = imaginaryPart(row + c * NUMBER);
-    u = realPart(b + c * NUMBER);
-    v = imaginaryPart(b + c * NUMBER);
-    re = minusProduct(plusProduct(re, x, u), y, v);
-    im = plusProduct(plusProduct(im, x, v), y, u);
-  }
-  put(target, re, im);
+  const x0 = realPart(row);
+  const y0 = imaginaryPart(row);
+  const x1 = realPart(row + NUMBER);
+  const y1 = imaginaryPart(row + NUMBER);
+  const x2 = realPart(row + 2 * NUMBER);
+  const y2 = imaginaryPart(row + 2 * NUMBER);
+  const x3 = m > 3 ? realPart(row + 3 * NUMBER) : x0;
+  const y3 = m > 3 ? imaginaryPart(row + 3 * NUMBER) : x0;
+  const x4 = m > 4 ? realPart(row + 4 * NUMBER) : x0;
+  const y4 = m > 4 ? imaginaryPart(row + 4 * NUMBER) : x0;
+  sumOfProducts(m, x0, y0, x1, y1, x2, y2, x3, y3, x4, y4, b, NUMBER, target);
 }
 
 /** re, im of the number at `at` grow by a real coefficient times the number at `source`. */
@@ -188,64 +229,26 @@ function crossSource(m: usize, source: usize, edge: usize, h: usize, value: usiz
   }
 }
 
-/** One entry of W: Σ S[row, e] T[e, column]. */
+/** One row of W: Σ S[row, e] T[e, column]. */
 // @ts-ignore: decorator
 @inline
-function entryOfProduct(m: usize, s: usize, t: usize, target: usize): void {
-  const row = m * NUMBER;
-  let x = realPart(s);
-  let y = imaginaryPart(s);
-  let u = realPart(t);
-  let v = imaginaryPart(t);
-  let re = minusProduct(f64x2.mul(x, u), y, v);
-  let im = plusProduct(f64x2.mul(x, v), y, u);
-  x = realPart(s + NUMBER);
-  y = imaginaryPart(s + NUMBER);
-  u = realPart(t + row);
-  v = imaginaryPart(t + row);
-  re = minusProduct(plusProduct(re, x, u), y, v);
-  im = plusProduct(plusProduct(im, x, v), y, u);
-  x = realPart(s + 2 * NUMBER);
-  y = imaginaryPart(s + 2 * NUMBER);
-  u = realPart(t + 2 * row);
-  v = imaginaryPart(t + 2 * row);
-  re = minusProduct(plusProduct(re, x, u), y, v);
-  im = plusProduct(plusProduct(im, x, v), y, u);
-  if (m > 3) {
-    x = realPart(s + 3 * NUMBER);
-    y = imaginaryPart(s + 3 * NUMBER);
-    u = realPart(t + 3 * row);
-    v = imaginaryPart(t + 3 * row);
-    re = minusProduct(plusProduct(re, x, u), y, v);
-    im = plusProduct(plusProduct(im, x, v), y, u);
-  }
-  if (m > 4) {
-    x = realPart(s + 4 * NUMBER);
-    y = imaginaryPart(s + 4 * NUMBER);
-    u = realPart(t + 4 * row);
-    v = imaginaryPart(t + 4 * row);
-    re = minusProduct(plusProduct(re, x, u), y, v);
-    im = plusProduct(plusProduct(im, x, v), y, u);
-  }
-  put(target, re, im);
-}
-
-/** One row of V: S (P + E). */
-// @ts-ignore: decorator
-@inline
-function rowOfCarry(m: usize, s: usize, edge: usize, mean: usize, target: usize): void {
-  let re = f64x2.splat(0);
-  let im = re;
-  for (let c: usize = 0; c < m; c++) {
-    const x = realPart(s + c * NUMBER);
-    const y = imaginaryPart(s + c * NUMBER);
-    const hub = f64x2.add(coefficient(edge + c * REAL), coefficient(mean + c * REAL));
-    re = plusProduct(re, x, hub);
-    im = plusProduct(im, y, hub);
-    const own = f64x2.add(coefficient(edge + (m + c) * REAL), coefficient(mean + (m + c) * REAL));
-    put(target + c * NUMBER, f64x2.mul(x, own), f64x2.mul(y, own));
-  }
-  put(target, re, im);
+function rowOfProduct(m: usize, row: usize, t: usize, target: usize): void {
+  const x0 = realPart(row);
+  const y0 = imaginaryPart(row);
+  const x1 = realPart(row + NUMBER);
+  const y1 = imaginaryPart(row + NUMBER);
+  const x2 = realPart(row + 2 * NUMBER);
+  const y2 = imaginaryPart(row + 2 * NUMBER);
+  const x3 = m > 3 ? realPart(row + 3 * NUMBER) : x0;
+  const y3 = m > 3 ? imaginaryPart(row + 3 * NUMBER) : x0;
+  const x4 = m > 4 ? realPart(row + 4 * NUMBER) : x0;
+  const y4 = m > 4 ? imaginaryPart(row + 4 * NUMBER) : x0;
+  const stride = m * NUMBER;
+  sumOfProducts(m, x0, y0, x1, y1, x2, y2, x3, y3, x4, y4, t, stride, target);
+  sumOfProducts(m, x0, y0, x1, y1, x2, y2, x3, y3, x4, y4, t + NUMBER, stride, target + NUMBER);
+  sumOfProducts(m, x0, y0, x1, y1, x2, y2, x3, y3, x4, y4, t + 2 * NUMBER, stride, target + 2 * NUMBER);
+  if (m > 3) sumOfProducts(m, x0, y0, x1, y1, x2, y2, x3, y3, x4, y4, t + 3 * NUMBER, stride, target + 3 * NUMBER);
+  if (m > 4) sumOfProducts(m, x0, y0, x1, y1, x2, y2, x3, y3, x4, y4, t + 4 * NUMBER, stride, target + 4 * NUMBER);
 }
 
 /** One entry of the next H: G + P₀ W[0, c] + P W[a, c]. */
@@ -322,19 +325,7 @@ function advance(m: usize, node: i32, next: i32, kept: i32, balance: bool): void
 
     addArrow(m, h, mean, -1);
     const w = kept < 0 ? scratchBlock : factors + (<usize>kept * pairs + q) * blockBytes;
-    for (let a: usize = 0; a < m; a++) {
-      const s = inverseBlock + a * row;
-      const target = w + a * row;
-      entryOfProduct(m, s, h, target);
-      entryOfProduct(m, s, h + NUMBER, target + NUMBER);
-      entryOfProduct(m, s, h + 2 * NUMBER, target + 2 * NUMBER);
-      if (m > 3) entryOfProduct(m, s, h + 3 * NUMBER, target + 3 * NUMBER);
-      if (m > 4) entryOfProduct(m, s, h + 4 * NUMBER, target + 4 * NUMBER);
-    }
-    if (kept >= 0) {
-      const v = carries + (<usize>kept * pairs + q) * blockBytes;
-      for (let a: usize = 0; a < m; a++) rowOfCarry(m, inverseBlock + a * row, edge, mean, v + a * row);
-    }
+    for (let a: usize = 0; a < m; a++) rowOfProduct(m, inverseBlock + a * row, h, w + a * row);
     const omega = v128.load(frequencies + q * 16);
     const zero = f64x2.splat(0);
     rowOfNext(m, true, g, coefficient(edge), zero, w, w, h);
@@ -381,7 +372,7 @@ function advance5(node: i32, next: i32, kept: i32, balance: bool): void {
 }
 
 /**
- * Eliminates from one end up to the meeting node, whose balance is added or not. W, V and u of the nodes from `first` to `last` are kept, at
+ * Eliminates from one end up to the meeting node, whose balance is added or not. W and u of the nodes from `first` to `last` are kept, at
  * their place from `first` on.
  */
 export function sweep(from: i32, meeting: i32, first: i32, last: i32, balance: bool): void {

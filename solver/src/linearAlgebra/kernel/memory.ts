@@ -45,9 +45,8 @@ export let blocks: usize = 0;
 export let meetingBlocks: usize = 0;
 export let values: usize = 0;
 export let meetingValues: usize = 0;
-/** W, V and u of the nodes kept. */
+/** W and u of the nodes kept. */
 export let factors: usize = 0;
-export let carries: usize = 0;
 export let steps: usize = 0;
 /** S, W where it is not kept, small vectors. */
 export let inverseBlock: usize = 0;
@@ -103,8 +102,6 @@ export function arrange(
   records = end;
   end = (end + recordBytes + 63) & ~63;
   factors = end;
-  end += keptNodes * pairs * blockBytes;
-  carries = end;
   end += keptNodes * pairs * blockBytes;
   steps = end;
   end += keptNodes * fieldBytes;

@@ -2,8 +2,7 @@
  * Unknowns and fluxes outward from the meeting node, once every other node is eliminated.
  *
  *   symbol   meaning                                                          shape
- *   x, Δ     unknowns V x' − u, and step x' − x to the neighbour nearer the     sides × m numbers
- *            meeting node, W x' + u; neither is a difference of the other
+ *   Δ        step x' − x to the neighbour nearer the meeting node, W x' + u     sides × m numbers
  *   j        flux through the edge in the direction of x, ±(P Δ + E x' + j⁰)    sides × m numbers
  *   J        reading of an edge, Σ (weight + iω weightᵢω) j                    per pair and side
  */
@@ -13,7 +12,6 @@ import { invertAny } from "./inverse";
 import {
   blockBytes,
   blocks,
-  carries,
   edgeOf,
   factors,
   fieldBytes,
@@ -44,6 +42,21 @@ function place(field: usize, index: i32, all: bool): usize {
   return field + (all ? <usize>index : <usize>(index & 1)) * fieldBytes;
 }
 
+/** target = Σ row[c] b[c] for any m. */
+function sum(m: usize, row: usize, b: usize, target: usize): void {
+  let re = f64x2.splat(0);
+  let im = re;
+  for (let c: usize = 0; c < m; c++) {
+    const x = realPart(row + c * NUMBER);
+    const y = imaginaryPart(row + c * NUMBER);
+    const u = realPart(b + c * NUMBER);
+    const v = imaginaryPart(b + c * NUMBER);
+    re = minusProduct(plusProduct(re, x, u), y, v);
+    im = plusProduct(plusProduct(im, x, v), y, u);
+  }
+  put(target, re, im);
+}
+
 /** x at the meeting node from both sweeps: (H + H') x + h + h' = 0. */
 export function meet(meeting: i32, all: bool): void {
   const m = unknownsOf(meeting);
@@ -62,7 +75,7 @@ export function meet(meeting: i32, all: bool): void {
         );
       const x = place(solution, meeting, all) + offset;
       memory.fill(x, 0, largest * NUMBER);
-      for (let a: usize = 0; a < m; a++) dot(m, block + a * m * NUMBER, values + offset, x + a * NUMBER);
+      for (let a: usize = 0; a < m; a++) sum(m, block + a * m * NUMBER, values + offset, x + a * NUMBER);
     }
   }
 }
@@ -117,7 +130,6 @@ function step(m: usize, node: i32, next: i32, first: i32, all: bool, isReading: 
   for (let q: usize = 0; q < pairs; q++) {
     const omega = v128.load(frequencies + q * 16);
     const w = factors + (kept * pairs + q) * blockBytes;
-    const carry = carries + (kept * pairs + q) * blockBytes;
     for (let k: usize = 0; k < sides; k++) {
       const offset = q * sideBytes + k * largest * NUMBER;
       const ahead = place(solution, next, all) + offset;
@@ -134,12 +146,7 @@ function step(m: usize, node: i32, next: i32, first: i32, all: bool, isReading: 
         const im = f64x2.add(imaginaryPart(scratch), imaginaryPart(u + a * NUMBER));
         const xRe = realPart(ahead + a * NUMBER);
         const xIm = imaginaryPart(ahead + a * NUMBER);
-        dot(m, carry + a * row, ahead, scratch);
-        put(
-          x + a * NUMBER,
-          f64x2.sub(realPart(scratch), realPart(u + a * NUMBER)),
-          f64x2.sub(imaginaryPart(scratch), imaginaryPart(u + a * NUMBER)),
-        );
+        put(x + a * NUMBER, f64x2.sub(xRe, re), f64x2.sub(xIm, im));
         if (a == 0) {
           re0 = re;
           im0 = im;
