@@ -197,7 +197,7 @@ export function Bench(props: BenchProps) {
             shown={shown}
             names={names}
             linked={linked}
-            dragging={bench.dragging}
+            waiting={bench.dragging || solved.busy}
           />
         </div>
 

@@ -1,10 +1,13 @@
 import { SvgText } from "./SvgText";
 import { colourOf, crossesPath, marksPath, type Series } from "./series";
 
-export const legendRow = 21;
+const legendRow = 21;
 
 /** Height that a legend takes inside its plot. */
-export const legendHeight = (series: readonly Series[]): number => (series.length ? series.length * legendRow + 16 : 0);
+export function legendHeight(series: readonly Series[]): number {
+  const listed = series.filter(({ unlisted }) => !unlisted).length;
+  return listed ? listed * legendRow + 16 : 0;
+}
 
 function Sample({ series }: { series: Series }) {
   if (series.kind === "measured") {
@@ -38,6 +41,7 @@ const order = { prediction: 0, measured: 1, held: 2 } as const;
 /** The legend, inside the plot, at its upper left or right: predictions, then measurements, then what is held. */
 export function Legend({ series, x, y }: { series: readonly Series[]; x: number; y: number }) {
   return series
+    .filter(({ unlisted }) => !unlisted)
     .toSorted((one, other) => order[one.kind] - order[other.kind])
     .map((one, row) => (
       <g key={one.id} transform={`translate(${x},${y + row * legendRow})`}>

@@ -1,5 +1,5 @@
 import { Group } from "@visx/group";
-import { type ReactNode, useId, useRef, useState } from "react";
+import { type ReactNode, useEffect, useId, useRef, useState } from "react";
 import { Axes } from "./Axes";
 import { CursorMarks } from "./CursorMarks";
 import { Curves } from "./Curves";
@@ -91,6 +91,14 @@ export function PlotFrame(props: PlotFrameProps) {
   const geometry = geometryOf(view, frame, xAxis.scale, yAxis.scale);
   const xTicks = ticksOf(view.x, xAxis.scale, frame.width, xAxis.scale === "log" ? 40 : 64, xAxis.step);
   const yTicks = ticksOf(view.y, yAxis.scale, frame.height, Math.min(38, frame.height / 4), yAxis.step);
+
+  // Lines glide where their values changed, never where the axes or the size did.
+  const drawn = JSON.stringify([view, frame]);
+  const lastDrawn = useRef(drawn);
+  const still = lastDrawn.current === drawn;
+  useEffect(() => {
+    lastDrawn.current = drawn;
+  }, [drawn]);
 
   const read = series.find((one) => one.id === cursor?.seriesId);
   const readIndex = read && cursor ? nearestIndex(placesOf(read), cursor.at) : -1;
@@ -194,7 +202,7 @@ export function PlotFrame(props: PlotFrameProps) {
                     series={series}
                     geometry={geometry}
                     monotone={props.monotone ?? false}
-                    glide={!props.dragging && !pointer.box}
+                    glide={still && !props.dragging && !pointer.box}
                   />
                   {props.above?.(geometry)}
                 </g>

@@ -1,7 +1,8 @@
 import type { Column } from "./columns";
+import { legendHeight } from "./Legend";
 import { type AxisDescription, PlotFrame, type PlotFrameProps } from "./PlotFrame";
 import type { Series } from "./series";
-import { boundsOf, padded, type Range, type ScaleKind, type View } from "./view";
+import { boundsOf, type Frame, padded, type Range, type ScaleKind, type View } from "./view";
 
 interface XYPlotProps
   extends Pick<
@@ -35,16 +36,18 @@ const unitRange = (scale: ScaleKind): Range => (scale === "log" ? [0.1, 10] : [0
 export function XYPlot({ xRange, yRange, columns, ...plot }: XYPlotProps) {
   const { series, xAxis, yAxis } = plot;
   const bounds = boundsOf(series, xAxis.scale, yAxis.scale);
-  const legendRoom = plot.legend === "none" || series.length === 0 ? 0.06 : 0.12 + 0.06 * series.length;
-  const view: View = {
-    x: xRange ?? bounds?.x ?? unitRange(xAxis.scale),
-    y: yRange ?? (bounds ? padded(bounds.y, yAxis.scale, 0.06, legendRoom) : unitRange(yAxis.scale)),
+  const whole = (frame: Frame): View => {
+    const room = plot.legend === "none" ? 0 : Math.min(0.45, legendHeight(series) / frame.height);
+    return {
+      x: xRange ?? bounds?.x ?? unitRange(xAxis.scale),
+      y: yRange ?? (bounds ? padded(bounds.y, yAxis.scale, 0.06, 0.06 + room / (1 - room)) : unitRange(yAxis.scale)),
+    };
   };
   return (
     <PlotFrame
       {...plot}
       monotone
-      whole={() => view}
+      whole={whole}
       columns={
         columns ?? [
           { label: xAxis.label, unit: xAxis.unit, value: (one: Series, index) => one.x[index] },

@@ -22,6 +22,8 @@ export interface Series {
   /** Stroke width in px where it is not the kind's own. */
   width?: number;
   dash?: string;
+  /** Not named in the legend: the other half of something that is. */
+  unlisted?: boolean;
 }
 
 /** The cursor that all plots of a page share: a series and a place on what it runs over. */

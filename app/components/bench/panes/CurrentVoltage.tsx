@@ -11,8 +11,8 @@ import type { PaneContext } from "./pane";
 const whole = {};
 
 /** Current–voltage curves under the scenario's light and in the dark, every point in the steady state. */
-export function CurrentVoltage({ document, dragging }: PaneContext) {
-  const detail = useDetail("currentVoltage", document, dragging ? null : whole);
+export function CurrentVoltage({ document, waiting }: PaneContext) {
+  const detail = useDetail("currentVoltage", document, waiting ? null : whole);
   const linked = useLinkedCursor();
   const series = useMemo<Series[]>(() => {
     if (!detail.value) return [];
@@ -53,7 +53,7 @@ export function CurrentVoltage({ document, dragging }: PaneContext) {
               title="Current–voltage curve under light and in the dark"
               xAxis={{ label: "*V*", unit: "V", scale: "linear" }}
               yAxis={{ label: "*J*, + = photocurrent", unit: "mA/cm²", scale: "linear" }}
-              yRange={shortCircuit > 0 ? [-0.6 * shortCircuit, 1.25 * shortCircuit] : undefined}
+              yRange={shortCircuit > 0 ? [-0.5 * shortCircuit, 1.7 * shortCircuit] : undefined}
               series={series}
               height={260}
               {...linked}

@@ -59,14 +59,14 @@ function seriesOf(profiles: HarmonicProfiles, choice: Choice): Series[] {
     if (re.every((value) => value === 0) && im.every((value) => value === 0)) return [];
     const style = { kind: "prediction", colour: position + 1, width: 1.8, x: profiles.depthNm } as const;
     return [
-      { ...style, id: `${key}:re`, label: `Re ${label}`, y: re },
-      { ...style, id: `${key}:im`, label: `Im ${label}`, y: im, dash: "5 3" },
+      { ...style, id: `${key}:re`, label: `${label}, Re`, y: re },
+      { ...style, id: `${key}:im`, label: `${label}, Im`, y: im, dash: "5 3", unlisted: true },
     ];
   });
 }
 
 /** The small oscillation over depth at the cursor's frequency. */
-export function HarmonicOverDepth({ document, spectrum, linked, dragging }: PaneContext) {
+export function HarmonicOverDepth({ document, spectrum, linked, waiting }: PaneContext) {
   const [wanted, choose] = useAddressChoice("oscillation", choices[0].id);
   const choice = choices.find(({ id }) => id === wanted) ?? choices[0];
   const frequencyHz =
@@ -80,7 +80,7 @@ export function HarmonicOverDepth({ document, spectrum, linked, dragging }: Pane
       fluxPerCm2S: spectrum.fluxPerCm2S,
       frequencyHz,
     });
-  const ask = useMemo(() => (point && !dragging ? JSON.parse(point) : null), [point, dragging]);
+  const ask = useMemo(() => (point && !waiting ? JSON.parse(point) : null), [point, waiting]);
   const detail = useDetail("harmonicProfiles", document, ask);
   const own = useLinkedCursor();
   const series = useMemo(() => (detail.value ? seriesOf(detail.value, choice) : []), [detail.value, choice]);
@@ -90,7 +90,7 @@ export function HarmonicOverDepth({ document, spectrum, linked, dragging }: Pane
         <span className="text-ink-soft">
           {spectrum && techniqueNames[spectrum.technique]} at the cursor's{" "}
           <RichText text={formatPrefixed(frequencyHz, "Hz")} />, per{" "}
-          {spectrum?.technique === "impedance" ? "volt" : "relative change of the light"}
+          {spectrum?.technique === "impedance" ? "volt" : "relative change of the light"}; lines Re, dashes Im
         </span>
         <select
           className="rounded bg-transparent py-0.5 text-tide"

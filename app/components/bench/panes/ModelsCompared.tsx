@@ -24,12 +24,12 @@ function distances(one: SpectrumResult, reference: SpectrumResult): { frequencyH
 }
 
 /** The spectrum on screen beside that of another model of the same stack, with their distance over frequency. */
-export function ModelsCompared({ document, spectrum, shown, linked, dragging }: PaneContext) {
+export function ModelsCompared({ document, spectrum, shown, linked, waiting }: PaneContext) {
   const kind = document.model?.kind ?? "driftDiffusion";
-  const [wanted, choose] = useAddressChoice("against", kind === "driftDiffusion" ? "gaertner" : "driftDiffusion");
+  const [wanted, choose] = useAddressChoice("against", kind === "driftDiffusion" ? "transit" : "driftDiffusion");
   const others = modelKinds.filter((other) => other !== kind);
   const other = others.find((one) => one === wanted) ?? others.at(-1)!;
-  const ask = useMemo(() => (dragging ? null : { shown, model: { kind: other } }), [shown, other, dragging]);
+  const ask = useMemo(() => (waiting ? null : { shown, model: { kind: other } }), [shown, other, waiting]);
   const detail = useDetail("otherModel", document, ask);
   const value = detail.value;
   const matches = spectrum && value && value.technique === spectrum.technique;

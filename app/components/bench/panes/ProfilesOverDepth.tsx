@@ -10,15 +10,15 @@ import { LayerEdges } from "./LayerEdges";
 import type { PaneContext } from "./pane";
 
 /** Profiles over depth in the steady state of the spectrum on screen. */
-export function ProfilesOverDepth({ document, spectrum, dragging }: PaneContext) {
+export function ProfilesOverDepth({ document, spectrum, waiting }: PaneContext) {
   const [wanted, choose] = useAddressChoice("profile", depthPlots[0].id);
   const plot = depthPlots.find(({ id }) => id === wanted) ?? depthPlots[0];
   const point = spectrum && JSON.stringify([spectrum.bias, spectrum.fluxPerCm2S]);
   const ask = useMemo(() => {
-    if (!point || dragging) return null;
+    if (!point || waiting) return null;
     const [bias, fluxPerCm2S] = JSON.parse(point);
     return { bias, fluxPerCm2S };
-  }, [point, dragging]);
+  }, [point, waiting]);
   const detail = useDetail("profiles", document, ask);
   const linked = useLinkedCursor();
   const series = useMemo(() => (detail.value ? depthSeries(detail.value, plot) : []), [detail.value, plot]);

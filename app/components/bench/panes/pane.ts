@@ -14,8 +14,8 @@ export interface PaneContext {
   /** Names of the document's spectra. */
   names: readonly string[];
   linked: LinkedCursor;
-  /** A value is being dragged: what is slow may wait. */
-  dragging: boolean;
+  /** A value is being dragged or the spectra are being solved: slower questions wait. */
+  waiting: boolean;
 }
 
 export interface Pane {
