@@ -66,6 +66,10 @@ export function formatNumber(value: number, significant?: number): string {
 export const formatFixed = (value: number, decimals: number): string =>
   Number.isFinite(value) ? withMinus(value.toFixed(decimals)).replace(/^−(0(?:\.0*)?)$/, "$1") : "–";
 
+/** A number as plain decimal digits, which is what numeric ARIA attributes have to be. */
+export const plainDecimal = (value: number): string =>
+  value.toLocaleString("en-US", { useGrouping: false, maximumSignificantDigits: 17 });
+
 /** A unit as printed: factors apart by a thin space, nothing for a pure number. */
 export const formatUnit = (unit: string): string => (unit === "1" ? "" : unit.replace(/[·\s]+/g, thinSpace));
 

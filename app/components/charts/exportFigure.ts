@@ -31,8 +31,11 @@ export function download(name: string, content: Blob): void {
 export function standaloneSvg(plot: SVGSVGElement): string {
   const { width, height } = plot.viewBox.baseVal;
   const stage = document.createElement("div");
-  stage.dataset.theme = "light";
-  stage.style.cssText = "position:absolute;left:-99999px;top:0;color-scheme:light";
+  stage.style.cssText = "position:absolute;left:-99999px;top:0";
+  // The page's theme is the light one while styles are read; nothing is painted in between.
+  const page = document.documentElement;
+  const theme = page.dataset.theme;
+  page.dataset.theme = "light";
   const copy = plot.cloneNode(true) as SVGSVGElement;
   stage.append(copy);
   document.body.append(stage);
@@ -60,6 +63,8 @@ export function standaloneSvg(plot: SVGSVGElement): string {
     return new XMLSerializer().serializeToString(copy);
   } finally {
     stage.remove();
+    if (theme === undefined) delete page.dataset.theme;
+    else page.dataset.theme = theme;
   }
 }
 

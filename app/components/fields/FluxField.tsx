@@ -4,6 +4,7 @@ import { RichText } from "~/components/ui/RichText";
 import { type FluxForm, fluxForms, fluxTo, fluxUnits, readFlux } from "~/lib/fluxText";
 import { formatNumber } from "~/lib/numberFormat";
 import { stepped, typedForm } from "~/lib/quantityText";
+import { ariaNumbers } from "./ariaNumbers";
 import { useSidewaysDrag } from "./useSidewaysDrag";
 import type { ChangeStep } from "./useTypedQuantity";
 
@@ -84,7 +85,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
             type="text"
             role="spinbutton"
             aria-label={`photon flux, in ${formWords[form]}`}
-            aria-valuenow={shownNumber}
+            {...ariaNumbers(shownNumber)}
             aria-valuetext={`${formatNumber(shownNumber)} ${fluxUnits[form]}`}
             aria-invalid={error !== null}
             aria-describedby={message === null ? undefined : `${id}-message`}

@@ -4,6 +4,7 @@ import { RichText } from "~/components/ui/RichText";
 import { formatNumber, formatQuantity, formatUnit } from "~/lib/numberFormat";
 import { permittedRange } from "~/lib/quantityText";
 import { plainText } from "~/lib/richText";
+import { ariaNumbers } from "./ariaNumbers";
 import { useSidewaysDrag } from "./useSidewaysDrag";
 import { type ChangeStep, type FieldValue, useTypedQuantity } from "./useTypedQuantity";
 
@@ -79,10 +80,8 @@ export function QuantityLine(props: QuantityLineProps) {
             type="text"
             role="spinbutton"
             aria-label={`${spoken}, in ${unit}`}
-            aria-valuenow={typeof number === "number" ? number : undefined}
             aria-valuetext={typeof number === "number" ? formatQuantity(number, quantity.unit) : words || "empty"}
-            aria-valuemin={quantity.min}
-            aria-valuemax={quantity.max}
+            {...ariaNumbers(typeof number === "number" ? number : undefined, quantity.min, quantity.max)}
             aria-invalid={error !== null}
             aria-describedby={message === null ? undefined : `${id}-message`}
             title={`${quantity.label}; permitted: ${permittedRange(quantity)}`}
