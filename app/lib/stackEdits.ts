@@ -5,6 +5,7 @@
  */
 import type { LayerDocument, ScenarioDocument, Side } from "@demilune/solver";
 import { quantities } from "@demilune/solver";
+import { formatQuantity } from "./numberFormat";
 import type { NumberField } from "./stackFields";
 
 export interface Edit {
@@ -174,9 +175,15 @@ export function replaceLayer(document: ScenarioDocument, index: number, layer: L
 const lifetimeNames = ["electronLifetimeNs", "holeLifetimeNs"];
 const lifetimeField = (name: string) => ({ path: ["recombination", name] as const });
 
+const startIonMobility = 1e-10;
+const ionMobility: Record<string, "cationMobilityCm2PerVs" | "anionMobilityCm2PerVs" | undefined> = {
+  cationsPerCm3: "cationMobilityCm2PerVs",
+  anionsPerCm3: "anionMobilityCm2PerVs",
+};
+
 /**
  * Set a number of a layer and what belongs to it: lifetimes come and go together, dynamic traps need both lifetimes
- * and a kind.
+ * and a kind, ions need a mobility.
  */
 export function setLayerNumber(
   document: ScenarioDocument,
@@ -209,6 +216,13 @@ export function setLayerNumber(
         notes.push("The dynamic traps were taken out with the lifetimes they need.");
       }
     }
+  }
+  const mobility = ionMobility[name];
+  if (mobility && typeof value === "number" && value > 0 && !layer.ions?.[mobility]) {
+    layer = withNumber(layer, { path: ["ions", mobility] }, startIonMobility);
+    notes.push(
+      `Their mobility was set to ${formatQuantity(startIonMobility, "cm²/Vs")}, a typical value without source: ions that cannot move would be doping.`,
+    );
   }
   if (field.path[0] === "traps") {
     if (typeof value === "number" && value > 0) {

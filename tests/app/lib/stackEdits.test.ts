@@ -134,10 +134,11 @@ describe("numbers of the stack", () => {
 
   it("set and leave out, with empty groups taken away", () => {
     const set = done(setLayerNumber(start, 0, field("cationsPerCm3"), 1e18)).document;
-    expect(set.stack.layers[0].ions).toEqual({ cationsPerCm3: 1e18 });
+    expect(set.stack.layers[0].ions).toEqual({ cationsPerCm3: 1e18, cationMobilityCm2PerVs: 1e-10 });
     expect(set.stack.layers[1]).toBe(start.stack.layers[1]);
+    const cleared = done(setLayerNumber(set, 0, field("cationsPerCm3"), undefined)).document;
     expect(
-      done(setLayerNumber(set, 0, field("cationsPerCm3"), undefined)).document.stack.layers[0].ions,
+      done(setLayerNumber(cleared, 0, field("cationMobilityCm2PerVs"), undefined)).document.stack.layers[0].ions,
     ).toBeUndefined();
   });
 

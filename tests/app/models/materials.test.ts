@@ -1,5 +1,6 @@
 import { beforeAll, describe, expect, it } from "vitest";
-import { countSourced, layerErrors, noSource, valuesOf } from "~/lib/materialForm";
+import { countSourced, noSource, valuesOf } from "~/lib/materialForm";
+import { layerErrors } from "~/lib/materialForm.server";
 import { newLayer } from "~/lib/stackEdits";
 import { createLab } from "~/models/labs.server";
 import {

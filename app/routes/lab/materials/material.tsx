@@ -3,15 +3,8 @@ import { data, Form, href, Link, redirect } from "react-router";
 import { MaterialForm } from "~/components/materials/MaterialForm";
 import { Moment } from "~/components/ui/moment";
 import { RichText } from "~/components/ui/RichText";
-import {
-  countSourced,
-  formTexts,
-  layerErrors,
-  materialOf,
-  materialSchema,
-  noSource,
-  valuesOf,
-} from "~/lib/materialForm";
+import { countSourced, formTexts, noSource, valuesOf } from "~/lib/materialForm";
+import { layerErrors, materialOf, materialSchema } from "~/lib/materialForm.server";
 import { formatNumber, formatUnit } from "~/lib/numberFormat";
 import { scenarioPath } from "~/lib/scenarioWords";
 import { newScenario } from "~/lib/stackEdits";

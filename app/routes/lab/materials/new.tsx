@@ -1,7 +1,8 @@
 import { parseWithZod } from "@conform-to/zod/v4";
 import { data, href, redirect } from "react-router";
 import { MaterialForm } from "~/components/materials/MaterialForm";
-import { formTexts, layerErrors, materialOf, materialSchema } from "~/lib/materialForm";
+import { formTexts } from "~/lib/materialForm";
+import { layerErrors, materialOf, materialSchema } from "~/lib/materialForm.server";
 import { newLayer } from "~/lib/stackEdits";
 import { createMaterial } from "~/models/materials.server";
 import { requireLab } from "~/services/authorisation.server";
