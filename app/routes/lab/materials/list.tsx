@@ -1,6 +1,7 @@
 import { Form, href, Link, redirect } from "react-router";
 import { z } from "zod";
 import { RichText } from "~/components/ui/RichText";
+import { ScrollRegion } from "~/components/ui/scrollRegion";
 import { countSourced } from "~/lib/materialForm";
 import { formatNumber } from "~/lib/numberFormat";
 import { countMaterials, findMaterial, listMaterials, setMaterialArchived } from "~/models/materials.server";
@@ -130,7 +131,7 @@ export default function Materials({ loaderData, params: { labId } }: Route.Compo
           {materials.length === 0 ? (
             <p className="mt-6 text-ink-soft">{q ? `No material has “${q}” in its name.` : "Nothing here."}</p>
           ) : (
-            <div className="mt-3 overflow-x-auto">
+            <ScrollRegion label="Materials" className="mt-3">
               <table className="table">
                 <caption className="sr-only">Materials by name</caption>
                 <thead>
@@ -190,7 +191,7 @@ export default function Materials({ loaderData, params: { labId } }: Route.Compo
                   ))}
                 </tbody>
               </table>
-            </div>
+            </ScrollRegion>
           )}
         </>
       )}

@@ -3,6 +3,7 @@ import { data, Form, href, Link, redirect } from "react-router";
 import { MaterialForm } from "~/components/materials/MaterialForm";
 import { Moment } from "~/components/ui/moment";
 import { RichText } from "~/components/ui/RichText";
+import { ScrollRegion } from "~/components/ui/scrollRegion";
 import { countSourced, formTexts, noSource, valuesOf } from "~/lib/materialForm";
 import { layerErrors, materialOf, materialSchema } from "~/lib/materialForm.server";
 import { formatNumber, formatUnit } from "~/lib/numberFormat";
@@ -90,7 +91,7 @@ export default function MaterialPage({ loaderData, actionData, params: { labId, 
         {sourced} of {all} values name a source. Changed <Moment at={material.updatedAt} />
         {canEdit && ". In a stack, choose “Add from the shelf” under its cross-section."}
       </p>
-      <div className="mt-3 overflow-x-auto">
+      <ScrollRegion label="Values and sources" className="mt-3">
         <table className="table">
           <caption className="sr-only">Values and their sources</caption>
           <thead>
@@ -120,7 +121,7 @@ export default function MaterialPage({ loaderData, actionData, params: { labId, 
             ))}
           </tbody>
         </table>
-      </div>
+      </ScrollRegion>
     </div>
   );
 }

@@ -1,6 +1,7 @@
 import { parseScenario } from "@demilune/solver";
 import { Form, Link } from "react-router";
 import { RichText } from "~/components/ui/RichText";
+import { ScrollRegion } from "~/components/ui/scrollRegion";
 import { differencesOf } from "~/lib/documentDifference";
 import { scenarioPath } from "~/lib/scenarioWords";
 import { findRevision, findScenario, listRevisions } from "~/models/scenarios.server";
@@ -69,7 +70,7 @@ export default function DifferencePage({ loaderData, params: { labId, scenarioId
             : `${differences.length} things differ.`}
       </p>
       {differences.length > 0 && (
-        <div className="mt-2 overflow-x-auto">
+        <ScrollRegion label="Differences" className="mt-2">
           <table className="table">
             <caption className="sr-only">What differs, side by side</caption>
             <thead>
@@ -93,7 +94,7 @@ export default function DifferencePage({ loaderData, params: { labId, scenarioId
               ))}
             </tbody>
           </table>
-        </div>
+        </ScrollRegion>
       )}
       {canEdit && before.number !== latest && (
         <Form method="post" action={`${path}/revisions`} className="mt-4">

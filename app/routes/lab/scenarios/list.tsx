@@ -1,6 +1,7 @@
 import { Form, href, Link, redirect, useSearchParams } from "react-router";
 import { FirstScenario } from "~/components/scenarios/FirstScenario";
 import { Moment } from "~/components/ui/moment";
+import { ScrollRegion } from "~/components/ui/scrollRegion";
 import { SortHeader } from "~/components/ui/sortHeader";
 import { layersOf, modelOf, scenarioPath } from "~/lib/scenarioWords";
 import { starterNamed } from "~/lib/starters";
@@ -143,7 +144,7 @@ export default function Scenarios({ loaderData, params: { labId } }: Route.Compo
                 : "Nothing here."}
             </p>
           ) : (
-            <div className="mt-3 overflow-x-auto">
+            <ScrollRegion label="Scenarios" className="mt-3">
               <table className="table">
                 <caption className="sr-only">{`${total} scenarios${q ? ` with “${q}” in the name` : ""}`}</caption>
                 <thead>
@@ -248,7 +249,7 @@ export default function Scenarios({ loaderData, params: { labId } }: Route.Compo
                   ))}
                 </tbody>
               </table>
-            </div>
+            </ScrollRegion>
           )}
           {pages > 1 && <Pages page={page} pages={pages} />}
         </>

@@ -1,6 +1,7 @@
 import { Form, Link, redirect } from "react-router";
 import { z } from "zod";
 import { Moment } from "~/components/ui/moment";
+import { ScrollRegion } from "~/components/ui/scrollRegion";
 import { scenarioPath } from "~/lib/scenarioWords";
 import { findScenario, listRevisions, restoreRevision } from "~/models/scenarios.server";
 import { canActAs, notFound, requireLab } from "~/services/authorisation.server";
@@ -62,7 +63,7 @@ export default function Revisions({ loaderData, params: { labId, scenarioId } }:
         </p>
       )}
       <Form method="get" action={`${path}/difference`} className="mt-3">
-        <div className="overflow-x-auto">
+        <ScrollRegion label="Revisions">
           <table className="table">
             <caption className="sr-only">Revisions, the latest first; pick two to compare</caption>
             <thead>
@@ -117,7 +118,7 @@ export default function Revisions({ loaderData, params: { labId, scenarioId } }:
               ))}
             </tbody>
           </table>
-        </div>
+        </ScrollRegion>
         {revisions.length > 1 && (
           <button type="submit" className="button mt-3">
             Compare the two
