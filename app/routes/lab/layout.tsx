@@ -26,7 +26,10 @@ export default function LabLayout({ loaderData: { lab, role } }: Route.Component
         <NavigationLink to={href("/lab/:labId", { labId })} end>
           {lab.name}
         </NavigationLink>
-        <nav aria-label="Lab" className="flex flex-wrap gap-x-5">
+        <nav
+          aria-label="Lab"
+          className="flex gap-x-5 max-md:order-last max-md:w-full max-md:overflow-x-auto max-md:whitespace-nowrap"
+        >
           <NavigationLink to={href("/lab/:labId/scenarios", { labId })}>Scenarios</NavigationLink>
           <NavigationLink to={href("/lab/:labId/measurements", { labId })}>Measurements</NavigationLink>
           <NavigationLink to={href("/lab/:labId/materials", { labId })}>Materials</NavigationLink>
