@@ -10,7 +10,7 @@ import { finishMails } from "~/services/mail/mail.server";
 import { SettingsError, settings } from "~/services/settings.server";
 import { createEdge } from "./edge";
 
-export interface Running {
+interface Running {
   /** Where it answers, without a slash at the end. */
   address: string;
   stop(): Promise<void>;
@@ -26,10 +26,7 @@ const mailGrace = 1000;
  * Prepares the database, seeds the demo if it is one, and listens.
  * @throws SettingsError for a setting that cannot be used
  */
-export async function start(
-  build: ServerBuild | (() => Promise<ServerBuild>),
-  before?: RequestHandler,
-): Promise<Running> {
+async function start(build: ServerBuild | (() => Promise<ServerBuild>), before?: RequestHandler): Promise<Running> {
   const current = settings();
   await prepareDatabase();
   if (current.demo) {
@@ -76,21 +73,17 @@ function listen(server: Server, port: number, host: string): Promise<void> {
   });
 }
 
-/** Runs until it is told to stop. Faults of the settings are said in plain words, without a stack. */
+/**
+ * Runs until it is told to stop.
+ * @throws SettingsError for a setting that cannot be used
+ */
 export async function run(build: ServerBuild | (() => Promise<ServerBuild>), before?: RequestHandler): Promise<void> {
-  try {
-    const running = await start(build, before);
-    const { demo } = settings();
-    process.stdout.write(`Demilune${demo ? " (demo)" : ""} is ready at ${running.address}\n`);
-    const stop = () => {
-      setTimeout(() => process.exit(1), 15_000).unref();
-      running.stop().then(() => process.exit(0));
-    };
-    process.once("SIGTERM", stop);
-    process.once("SIGINT", stop);
-  } catch (error) {
-    if (!(error instanceof SettingsError)) throw error;
-    process.stderr.write(`${error.message}\n`);
-    process.exit(2);
-  }
+  const running = await start(build, before);
+  process.stdout.write(`Demilune${settings().demo ? " (demo)" : ""} is ready at ${running.address}\n`);
+  const stop = () => {
+    setTimeout(() => process.exit(1), 15_000).unref();
+    running.stop().then(() => process.exit(0));
+  };
+  process.once("SIGTERM", stop);
+  process.once("SIGINT", stop);
 }

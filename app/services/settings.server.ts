@@ -47,7 +47,9 @@ const environment = z.object({
 export type Settings = ReturnType<typeof parseSettings>;
 
 /** A setting that cannot be used, with every fault in its message. */
-export class SettingsError extends Error {}
+export class SettingsError extends Error {
+  override name = "SettingsError";
+}
 
 const loopbackNames = ["localhost", "127.0.0.1", "[::1]"];
 const isLoopback = (host: string) => loopbackNames.includes(host) || host === "::1";

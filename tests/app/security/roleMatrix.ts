@@ -16,6 +16,8 @@ export interface Access {
   form?: Record<string, string>;
   /** The answer for those who may, where it is one that otherwise means refusal. */
   answer?: number;
+  /** Whether it signs in or out; whoever asked starts afresh then. */
+  changesSession?: boolean;
   /** The query string to ask with. */
   query?: string;
 }
@@ -32,11 +34,11 @@ export const matrix: Record<string, Row> = {
   "routes/public/landing": { GET: everybody },
   "routes/public/notFound": { GET: { needed: "everybody", answer: 404 }, POST: { needed: "everybody", answer: 404 } },
   "routes/public/mailbox": { GET: everybody },
-  "routes/public/demo": { POST: { needed: "everybody", form: { role: "viewer" } } },
+  "routes/public/demo": { POST: { needed: "everybody", form: { role: "viewer" }, changesSession: true } },
   "routes/public/theme": { POST: everybody },
   "routes/account/signIn": { GET: everybody, POST: everybody },
   "routes/account/signInCode": { GET: everybody, POST: everybody },
-  "routes/account/signOut": { POST: everybody },
+  "routes/account/signOut": { POST: { needed: "everybody", changesSession: true } },
   "routes/account/account": { GET: signedIn, POST: signedIn },
   "routes/account/newLab": { POST: signedIn },
   "routes/lab/layout": { GET: viewer },

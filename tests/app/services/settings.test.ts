@@ -1,3 +1,5 @@
+import { execFile } from "node:child_process";
+import { promisify } from "node:util";
 import { describe, expect, it } from "vitest";
 import { parseSettings, SettingsError } from "~/services/settings.server";
 
@@ -60,5 +62,17 @@ describe("settings", () => {
 
   it("never repeat a value that may be secret", () => {
     expect(complaint({ MAIL_URL: "smtp//user:hunter2@mail", SECRET: "hunter2" })).not.toContain("hunter2");
+  });
+
+  it("stop the built server in plain words, without a stack, with code 2", async () => {
+    const environment = { PATH: process.env.PATH, HOST: "0.0.0.0", DATA_DIR: process.env.DATA_DIR };
+    const refused = await promisify(execFile)(process.execPath, ["app/server/serve.mjs"], { env: environment }).catch(
+      (error) => error,
+    );
+    expect(refused).toMatchObject({
+      code: 2,
+      stdout: "",
+      stderr: expect.stringMatching(/^Plain http is refused for [^\n]+\n$/),
+    });
   });
 });
