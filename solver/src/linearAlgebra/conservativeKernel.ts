@@ -28,6 +28,7 @@ interface Kernel {
   ): void;
   solve(meeting: number, everywhere: number, all: number): void;
   table: WebAssembly.Global;
+  extents: WebAssembly.Global;
   records: WebAssembly.Global;
   frequencies: WebAssembly.Global;
   marks: WebAssembly.Global;
@@ -61,7 +62,7 @@ const NUMBER = 4;
 /** Copies a system into the kernel's memory, ready for batches of `pairs`. */
 function loadSystem(
   kernel: Kernel,
-  { largest, records, table, weights }: PackedSystem,
+  { largest, records, table, extents, weights }: PackedSystem,
   sides: number,
   pairs: number,
   keptNodes: number,
@@ -71,6 +72,7 @@ function loadSystem(
   const { buffer } = kernel.memory;
   new Float64Array(buffer, kernel.records.value).set(records);
   new Int32Array(buffer, kernel.table.value).set(table);
+  new Int32Array(buffer, kernel.extents.value).set(extents);
   new Float64Array(buffer, kernel.weights.value).set(weights);
 }
 

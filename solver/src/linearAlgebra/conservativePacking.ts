@@ -12,11 +12,11 @@ import type { ConservativeSystem } from "./conservativeSystem.ts";
 const TABLE_ENTRIES = 8;
 
 export interface PackedSystem {
-  /** Unknowns of each node that the kernel solves for. */
-  sizes: Uint8Array;
   largest: number;
   records: Float64Array;
   table: Int32Array;
+  /** First and last node of each drive with a source at it or in an edge of it. */
+  extents: Int32Array;
   /** Weights of the reading, then those of iω. */
   weights: Float64Array;
 }
@@ -61,6 +61,20 @@ function sizesOf(system: ConservativeSystem): Uint8Array {
   for (const { node, column, row } of relaxations)
     for (let a = 3; a < m; a++) if (column[a] !== 0 || row[a] !== 0) sizes[node] = Math.max(sizes[node], a + 1);
   return sizes;
+}
+
+function extentsOf({ nodes, blockSize: m, drives }: ConservativeSystem): Int32Array {
+  const extents = new Int32Array(2 * drives.length);
+  const isSource = (value: number) => value !== 0;
+  drives.forEach(({ atNodes, inEdges }, k) => {
+    const [nodesFirst, edgesFirst] = [atNodes, inEdges].map((values) => values?.findIndex(isSource) ?? -1);
+    const [nodesLast, edgesLast] = [atNodes, inEdges].map((values) => values?.findLastIndex(isSource) ?? -1);
+    const first = [nodesFirst, edgesFirst].filter((at) => at >= 0).map((at) => Math.floor(at / m));
+    extents[2 * k] = Math.min(nodes, ...first);
+    // an edge with a source ends at the node after it
+    extents[2 * k + 1] = Math.max(Math.floor(nodesLast / m), edgesLast < 0 ? -1 : Math.floor(edgesLast / m) + 1);
+  });
+  return extents;
 }
 
 /** The system laid out for the kernel, held unknowns already replaced; undefined for one whose shape the kernel does not know. */
@@ -128,5 +142,5 @@ export function pack(system: ConservativeSystem): PackedSystem | undefined {
   const weights = new Float64Array(2 * largest);
   weights.set(reading.weight.subarray(0, largest));
   weights.set(reading.harmonicWeight.subarray(0, largest), largest);
-  return { sizes, largest, records, table, weights };
+  return { largest, records, table, extents: extentsOf(system), weights };
 }

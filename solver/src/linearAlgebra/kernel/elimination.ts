@@ -18,6 +18,7 @@ import { invert } from "./inverse";
 import {
   blockBytes,
   blocks,
+  driven,
   edgeOf,
   factors,
   fieldBytes,
@@ -305,7 +306,10 @@ function advance(m: usize, node: i32, next: i32, kept: i32, balance: bool): void
       const value = values + q * sideBytes + k * largest * NUMBER;
       const u = kept < 0 ? scratch + row * 3 : steps + <usize>kept * fieldBytes + q * sideBytes + k * largest * NUMBER;
       if (source != 0) crossSource(m, source + k * m * REAL, edge, h, value, u);
-      else {
+      else if (!driven(k, node, direction)) {
+        const zero = f64x2.splat(0);
+        for (let a: usize = 0; a < m; a++) put(u + a * NUMBER, zero, zero);
+      } else {
         for (let a: usize = 0; a < m; a++) dot(m, inverseBlock + a * row, value, u + a * NUMBER);
         const x = realPart(u);
         const y = imaginaryPart(u);

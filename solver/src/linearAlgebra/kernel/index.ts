@@ -7,7 +7,7 @@ import { blockBytes, blocks, fieldBytes, marks, meetingBlocks, meetingValues, no
 import { sweep } from "./elimination";
 import { meet, substitute } from "./substitution";
 
-export { arrange, fluxes, frequencies, marks, readings, records, solution, table, weights } from "./memory";
+export { arrange, extents, fluxes, frequencies, marks, readings, records, solution, table, weights } from "./memory";
 
 /**
  * Solves the batch. The reading edge lies between nodes `meeting` − 1 and `meeting` > 0; with `everywhere` all other edges are compared

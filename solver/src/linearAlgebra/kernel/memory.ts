@@ -26,6 +26,8 @@ export let frequencies: usize = 0;
 export let marks: usize = 0;
 /** Reading of each flux: weight (largest) and weight of iω (largest), reals. */
 export let weights: usize = 0;
+/** First and last node of each side whose balance or edges have a source (i32, i32): h is zero before them. */
+export let extents: usize = 0;
 /** Per pair and side: total at the reading edge (number), largest |difference|² and |part|² over the edges (v128 each). */
 export let readings: usize = 0;
 /** Unknowns [node][pair][side][unknown] and fluxes [edge][pair][side][unknown], numbers; two nodes in turn where not all are kept. */
@@ -81,6 +83,8 @@ export function arrange(
   end += pairs * 16;
   weights = end;
   end += largest * 16;
+  extents = end;
+  end = (end + sides * 8 + 15) & ~15;
   readings = end;
   end += pairs * sides * 64;
   scratch = end;
@@ -130,6 +134,14 @@ export function unknownsOf(node: i32): usize {
 @inline
 export function recordOf(node: i32): usize {
   return records + entry(node, 0);
+}
+
+/** Whether h of a side may be other than zero once a node is reached in a direction. */
+// @ts-ignore: decorator
+@inline
+export function driven(side: usize, node: i32, direction: i32): bool {
+  const at = extents + side * 8;
+  return direction > 0 ? node >= load<i32>(at) : node <= load<i32>(at, 4);
 }
 
 /** Record of the edge a node is eliminated across in a direction (+1 to the node after, −1 to the node before). */
