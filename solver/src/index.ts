@@ -9,6 +9,18 @@ export { type CurrentVoltageCurve, type CurveRequest, currentVoltageCurve } from
 export { type ComplexProfile, type HarmonicProfiles, harmonicProfilesOf } from "./driftDiffusion/harmonicProfiles.ts";
 export { type OperatingPoint, type OperatingPoints, operatingPointsOf } from "./driftDiffusion/operatingPoints.ts";
 export { type Profiles, profilesOf } from "./driftDiffusion/profiles.ts";
+export {
+  type DetailedFit,
+  type FitHooks,
+  type FitRequest,
+  type FitResult,
+  type FitState,
+  type FittedParameter,
+  fitDocument,
+  fitScenario,
+} from "./fit/fit.ts";
+export type { Evaluator, FitData } from "./fit/fitProblem.ts";
+export type { Unresolved } from "./fit/identifiability.ts";
 export * from "./result.ts";
 export * from "./scenario/device.ts";
 export * from "./scenario/errors.ts";

@@ -7,7 +7,8 @@
 import quantileChiSquare from "@stdlib/stats-base-dists-chisquare-quantile";
 import { type KramersKronig, kramersKronig } from "./kramersKronig.ts";
 import { type Measured, samplesOf, sweepsOf } from "./measured.ts";
-import { localNoise, localVariances } from "./noise.ts";
+import { localNoise } from "./noise.ts";
+import { noiseScale } from "./noiseScale.ts";
 import type { Verdict } from "./verdict.ts";
 
 export interface Drift {
@@ -47,49 +48,7 @@ const marginalAt = 3;
 const failsAt = 4;
 /** Chance of a χ² as large as the differences': marginal, fails. */
 const chance = { marginal: 1e-2, fails: 1e-4 };
-/** A modulus below this share of the largest does not weigh more than this one. */
-const leastModulus = 0.01;
-
 const mean = (values: readonly number[]): number => values.reduce((sum, value) => sum + value, 0) / values.length;
-
-/** Spread of ln(variance) over the windows: the smaller, the better a scale describes how the noise depends on frequency. */
-function unevenness(variances: readonly number[]): number {
-  const logs = variances.map((value) => Math.log(Math.max(value, 1e-300)));
-  const centre = mean(logs);
-  return Math.sqrt(mean(logs.map((value) => (value - centre) ** 2)));
-}
-
-/**
- * Standard deviation per row: what the file says, or its shape (the modulus, unless the local noise is plainly the same
- * at all frequencies) with the size estimated from local fits, sweep by sweep, so that drift between sweeps has no share.
- */
-function scaleOf(
-  data: Measured,
-  sweeps: number[][],
-  largest: number,
-): { scale: number[]; noise: number; known: boolean } {
-  if (data.sigma) return { scale: data.sigma, noise: 1, known: true };
-  const modulus = data.re.map((value, row) => Math.max(Math.hypot(value, data.im[row]), leastModulus * largest));
-  const uniform = modulus.map(() => largest);
-  const estimate = (scale: number[]) => {
-    const parts = sweeps.filter((rows) => rows.length >= 6);
-    const pick = (rows: number[]) => rows.map((row) => scale[row]);
-    const square = parts.reduce(
-      (sum, rows) => sum + localNoise(samplesOf(data, rows), pick(rows)) ** 2 * rows.length,
-      0,
-    );
-    const points = parts.reduce((sum, rows) => sum + rows.length, 0);
-    return {
-      noise: points > 0 ? Math.sqrt(square / points) : 0,
-      uneven: unevenness(parts.flatMap((rows) => localVariances(samplesOf(data, rows), pick(rows)))),
-    };
-  };
-  const byModulus = estimate(modulus);
-  const alike = estimate(uniform);
-  return alike.uneven < 0.9 * byModulus.uneven
-    ? { scale: uniform, noise: alike.noise, known: false }
-    : { scale: modulus, noise: byModulus.noise, known: false };
-}
 
 function driftOf(data: Measured, sweeps: number[][], deviation: (row: number) => number, largest: number): Drift {
   const repeats = sweeps.slice(1);
@@ -170,7 +129,7 @@ export function validateMeasured(data: Measured): Validation {
       drift,
     };
   }
-  const { scale, noise, known } = scaleOf(data, sweeps, largest);
+  const { scale, noise, known } = noiseScale(data);
   const drift = driftOf(data, sweeps, (row) => Math.max(scale[row] * noise, 1e-9 * largest), largest);
   // Sweeps that differ are not one spectrum: the first is tested alone.
   const rows = drift.verdict === "fails" ? sweeps[0] : rowsInOrder;
