@@ -31,14 +31,19 @@ const nextRepaint = (page: Page) =>
     () =>
       new Promise<number>((resolve) => {
         let start = 0;
-        const onMove = (event: PointerEvent) => {
-          start ||= event.timeStamp;
-        };
-        addEventListener("pointermove", onMove, { capture: true });
+        // No named function in here: tsx would wrap it in a helper that the page does not have.
+        const listening = new AbortController();
+        addEventListener(
+          "pointermove",
+          (event) => {
+            start ||= event.timeStamp;
+          },
+          { capture: true, signal: listening.signal },
+        );
         const watch = new MutationObserver(() => {
           if (start === 0) return;
           watch.disconnect();
-          removeEventListener("pointermove", onMove, { capture: true });
+          listening.abort();
           const painted = new MessageChannel();
           painted.port1.onmessage = () => resolve(performance.now() - start);
           requestAnimationFrame(() => painted.port2.postMessage(null));

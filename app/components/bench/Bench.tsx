@@ -1,5 +1,5 @@
 import type { ResultDocument, ScenarioDocument, SpectrumResult } from "@demilune/solver";
-import { type ReactNode, useMemo, useState } from "react";
+import { memo, type ReactNode, useMemo, useState } from "react";
 import { useLinkedCursor } from "~/components/charts/useLinkedCursor";
 import { CrossSection } from "~/components/stack/CrossSection";
 import type { Picked } from "~/components/stack/stackProps";
@@ -48,6 +48,9 @@ export interface BenchProps {
 }
 
 const none: readonly Measurement[] = [];
+
+// While a value is dragged the page is drawn twice a frame: for the value, and for its curves. Neither draws the other's part.
+const StillCrossSection = memo(CrossSection);
 
 /** The layer one looks at first: that with mobile ions, else the one that absorbs. */
 function firstPick({ stack: { layers } }: ScenarioDocument): Picked {
@@ -106,6 +109,14 @@ export function Bench(props: BenchProps) {
   const numbers = { document, onChange: change, readOnly: exposed !== undefined };
   const kind = document.model?.kind ?? "driftDiffusion";
 
+  const readout = useMemo(
+    () =>
+      spectrum && (
+        <Readout spectra={series} cursor={linked.cursor} technique={spectrum.technique} unit={spectrum.unit} />
+      ),
+    [series, linked.cursor, spectrum],
+  );
+
   const holding = held ? (
     <button type="button" className="action" onClick={() => setHeld(null)}>
       Let the curve go
@@ -153,11 +164,7 @@ export function Bench(props: BenchProps) {
               chosen={String(shown + 1)}
               onChoose={chooseTab}
             />
-            {spectrum && (
-              <div className="py-1.5 max-md:order-last max-md:hidden">
-                <Readout spectra={series} cursor={linked.cursor} technique={spectrum.technique} unit={spectrum.unit} />
-              </div>
-            )}
+            {spectrum && <div className="py-1.5 max-md:order-last max-md:hidden">{readout}</div>}
           </div>
           <div role="tabpanel" id={`spectra-pane-${shown + 1}`} aria-labelledby={`spectra-tab-${shown + 1}`}>
             {solved.faults.length > 0 && <Faults faults={solved.faults} stale={spectrum !== undefined} />}
@@ -176,14 +183,7 @@ export function Bench(props: BenchProps) {
                 series={series}
                 linked={linked}
                 dragging={bench.dragging}
-                readout={
-                  <Readout
-                    spectra={series}
-                    cursor={linked.cursor}
-                    technique={spectrum.technique}
-                    unit={spectrum.unit}
-                  />
-                }
+                readout={readout}
               />
             )}
             {!spectrum && requests.length > 0 && solved.faults.length === 0 && !solved.defect && (
@@ -204,7 +204,7 @@ export function Bench(props: BenchProps) {
         <aside aria-label="Device, light and model" className="min-w-0 lg:col-start-1 lg:row-start-1">
           <div className="grid gap-x-5 gap-y-4 md:max-lg:grid-cols-[128px_minmax(0,1fr)] xl:grid-cols-[128px_204px]">
             <div>
-              <CrossSection
+              <StillCrossSection
                 document={document}
                 onChange={change}
                 readOnly={fixedStructure}
@@ -218,7 +218,7 @@ export function Bench(props: BenchProps) {
           <div className="mt-4 grid gap-x-8 md:max-lg:grid-cols-2">
             <LightNumbers {...numbers} />
             <CircuitNumbers {...numbers} />
-            <ModelNumbers {...numbers} spectrum={spectrum} />
+            <ModelNumbers {...numbers} spectrum={kind === "driftDiffusion" ? undefined : spectrum} />
             <SpectraList {...numbers} readOnly={numbers.readOnly || fixedStructure} />
             <FrequencyNumbers {...numbers} />
             {props.besideBelow}

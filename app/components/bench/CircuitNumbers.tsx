@@ -1,9 +1,10 @@
+import { memo } from "react";
 import { NumberGroup } from "~/components/stack/NumberGroup";
 import type { StackProps } from "~/components/stack/stackProps";
 import { DocumentNumber } from "./DocumentNumber";
 
 /** What surrounds the cell, and its temperature. */
-export function CircuitNumbers(props: StackProps) {
+export const CircuitNumbers = memo(function CircuitNumbers(props: StackProps) {
   return (
     <NumberGroup title="Circuit and temperature">
       <DocumentNumber
@@ -44,4 +45,4 @@ export function CircuitNumbers(props: StackProps) {
       />
     </NumberGroup>
   );
-}
+});

@@ -1,9 +1,10 @@
+import { memo } from "react";
 import { NumberGroup } from "~/components/stack/NumberGroup";
 import type { StackProps } from "~/components/stack/stackProps";
 import { DocumentNumber } from "./DocumentNumber";
 
 /** The frequencies of all spectra, equally spaced on a logarithmic axis, or a list that came with the document. */
-export function FrequencyNumbers(props: StackProps) {
+export const FrequencyNumbers = memo(function FrequencyNumbers(props: StackProps) {
   const { document, onChange, readOnly } = props;
   const list = document.frequencies?.listHz;
   if (list)
@@ -49,4 +50,4 @@ export function FrequencyNumbers(props: StackProps) {
       />
     </NumberGroup>
   );
-}
+});

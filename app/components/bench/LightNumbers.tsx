@@ -1,4 +1,5 @@
 import type { Side } from "@demilune/solver";
+import { memo } from "react";
 import { ChoiceLine } from "~/components/fields/ChoiceField";
 import { FluxField } from "~/components/fields/FluxField";
 import { NumberGroup } from "~/components/stack/NumberGroup";
@@ -12,7 +13,7 @@ const sides = [
 ] as const;
 
 /** The operating light: flux in three units, side, modulation, wavelengths, reflectances. */
-export function LightNumbers(props: StackProps) {
+export const LightNumbers = memo(function LightNumbers(props: StackProps) {
   const { document, onChange } = props;
   const { light } = document;
   const number = { ...props };
@@ -71,4 +72,4 @@ export function LightNumbers(props: StackProps) {
       />
     </NumberGroup>
   );
-}
+});

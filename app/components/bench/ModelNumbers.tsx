@@ -7,6 +7,7 @@ import {
   type ScenarioDocument,
   type SpectrumResult,
 } from "@demilune/solver";
+import { memo } from "react";
 import { ChoiceLine } from "~/components/fields/ChoiceField";
 import { NumberGroup } from "~/components/stack/NumberGroup";
 import type { StackProps } from "~/components/stack/stackProps";
@@ -79,7 +80,7 @@ interface ModelNumbersProps extends StackProps {
 }
 
 /** The model, the layer it takes its parameters from, and the values that replace derived ones. */
-export function ModelNumbers({ spectrum, ...props }: ModelNumbersProps) {
+export const ModelNumbers = memo(function ModelNumbers({ spectrum, ...props }: ModelNumbersProps) {
   const { document, onChange } = props;
   const kind = document.model?.kind ?? "driftDiffusion";
   const derived = spectrum?.status === "solved" ? spectrum.derived : undefined;
@@ -159,4 +160,4 @@ export function ModelNumbers({ spectrum, ...props }: ModelNumbersProps) {
       )}
     </NumberGroup>
   );
-}
+});

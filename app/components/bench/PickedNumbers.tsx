@@ -1,3 +1,4 @@
+import { memo } from "react";
 import { ContactNumbers } from "~/components/stack/ContactNumbers";
 import { InterfaceNumbers } from "~/components/stack/InterfaceNumbers";
 import { LayerNumbers } from "~/components/stack/LayerNumbers";
@@ -9,7 +10,7 @@ interface PickedNumbersProps extends StackProps {
 }
 
 /** The numbers of what is picked in the cross-section, beside it. */
-export function PickedNumbers({ picked, held, ...props }: PickedNumbersProps) {
+export const PickedNumbers = memo(function PickedNumbers({ picked, held, ...props }: PickedNumbersProps) {
   switch (picked.kind) {
     case "layer":
       return picked.index < props.document.stack.layers.length ? (
@@ -22,4 +23,4 @@ export function PickedNumbers({ picked, held, ...props }: PickedNumbersProps) {
     case "contact":
       return <ContactNumbers {...props} side={picked.side} />;
   }
-}
+});

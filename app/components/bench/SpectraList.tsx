@@ -1,4 +1,5 @@
 import { type Bias, quantities, techniques } from "@demilune/solver";
+import { memo } from "react";
 import { ChoiceLine } from "~/components/fields/ChoiceField";
 import { QuantityLine } from "~/components/fields/QuantityLine";
 import { NumberGroup } from "~/components/stack/NumberGroup";
@@ -13,7 +14,7 @@ const biases = [
 ] as const;
 
 /** The spectra that are asked for: technique, operating point, and a flux of their own. */
-export function SpectraList(props: StackProps) {
+export const SpectraList = memo(function SpectraList(props: StackProps) {
   const { document, onChange, readOnly } = props;
   const spectra = document.spectra ?? [];
   // The place in the list is what a row stands for: it has no other identity.
@@ -98,4 +99,4 @@ export function SpectraList(props: StackProps) {
       )}
     </NumberGroup>
   );
-}
+});

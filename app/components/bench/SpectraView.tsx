@@ -1,5 +1,5 @@
 import type { SpectrumResult } from "@demilune/solver";
-import { type ReactNode, useMemo, useState } from "react";
+import { memo, type ReactNode, useMemo, useState } from "react";
 import { ComplexPlane } from "~/components/charts/ComplexPlane";
 import { OverFrequency } from "~/components/charts/OverFrequency";
 import { residualsOf } from "~/components/charts/residuals";
@@ -28,7 +28,7 @@ const parts = {
 const partWords = { modulus: "modulus", phase: "phase", re: "real part", im: "imaginary part" } as const;
 
 /** One spectrum: a large complex plane, two parts over frequency beside it, residuals where something is measured. */
-export function SpectraView(props: SpectraViewProps) {
+export const SpectraView = memo(function SpectraView(props: SpectraViewProps) {
   const { spectrum, linked, dragging, readout } = props;
   const [direction, setDirection] = useAddressChoice("im", "down");
   const [view, setView] = useAddressChoice("parts", "polar");
@@ -146,4 +146,4 @@ export function SpectraView(props: SpectraViewProps) {
       </div>
     </div>
   );
-}
+});

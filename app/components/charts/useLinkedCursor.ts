@@ -1,4 +1,4 @@
-import { useCallback, useState } from "react";
+import { useCallback, useMemo, useState } from "react";
 import type { Cursor } from "./series";
 
 export interface LinkedCursor {
@@ -16,5 +16,5 @@ export function useLinkedCursor(initial: Cursor | null = null): LinkedCursor {
       ),
     [],
   );
-  return { cursor, onCursor };
+  return useMemo(() => ({ cursor, onCursor }), [cursor, onCursor]);
 }
