@@ -2,7 +2,8 @@
 import { demoLabName } from "~/models/demo.server";
 import { createLab, findLabByName, type Role } from "~/models/labs.server";
 import { ensureUser } from "~/models/users.server";
-import { seedMaterials, seedScenarios } from "./seedScenarios";
+import { seedMeasurements } from "./seedMeasurements";
+import { seedMaterials, seedScenarios, seedScenarios } from "./seedScenarios";
 
 const invented: { lab: string; people: { email: string; name: string; role: Role }[] }[] = [
   {
@@ -28,5 +29,6 @@ export async function seedDemo(): Promise<void> {
     const lab = (await findLabByName(name)) ?? (await createLab(name, members, { invented: true }));
     await seedScenarios(lab.id, members[0].userId);
     await seedMaterials(lab.id, members[0].userId);
+    if (name === demoLabName) await seedMeasurements({ labId: lab.id, userId: members[0].userId });
   }
 }

@@ -43,7 +43,7 @@ export interface BenchProps {
   exposed?: readonly string[];
   /** Buttons of the phone's sheet besides holding a curve. */
   sheetActions?: ReactNode;
-  /** Below the cross-section and its numbers, such as measurements to attach. */
+  /** Under the cross-section, before light and circuit, such as measurements to lay over. */
   besideBelow?: ReactNode;
 }
 
@@ -216,12 +216,12 @@ export function Bench(props: BenchProps) {
             <div className="min-w-0">{picked && <PickedNumbers {...numbers} picked={picked} held={heldValues} />}</div>
           </div>
           <div className="mt-4 grid gap-x-8 md:max-lg:grid-cols-2">
+            {props.besideBelow}
             <LightNumbers {...numbers} />
             <CircuitNumbers {...numbers} />
             <ModelNumbers {...numbers} spectrum={kind === "driftDiffusion" ? undefined : spectrum} />
             <SpectraList {...numbers} readOnly={numbers.readOnly || fixedStructure} />
             <FrequencyNumbers {...numbers} />
-            {props.besideBelow}
           </div>
         </aside>
       </div>

@@ -79,13 +79,13 @@ export default function Measurements({ loaderData, params: { labId } }: Route.Co
             <input type="hidden" name="sort" value={state.sort} />
             {state.order && <input type="hidden" name="order" value={state.order} />}
             <div>
-              <label htmlFor="q" className="text-ink-soft text-small">
+              <label htmlFor="q" className="block text-ink-soft text-small">
                 Name, sample or group
               </label>
               <input key={state.q} id="q" name="q" type="search" defaultValue={state.q} className="field w-64" />
             </div>
             <div>
-              <label htmlFor="technique" className="text-ink-soft text-small">
+              <label htmlFor="technique" className="block text-ink-soft text-small">
                 Technique
               </label>
               <select
