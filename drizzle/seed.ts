@@ -3,7 +3,7 @@ import { demoLabName } from "~/models/demo.server";
 import { createLab, findLabByName, type Role } from "~/models/labs.server";
 import { ensureUser } from "~/models/users.server";
 import { seedMeasurements } from "./seedMeasurements";
-import { seedMaterials, seedScenarios, seedScenarios } from "./seedScenarios";
+import { seedMaterials, seedScenarios } from "./seedScenarios";
 
 const invented: { lab: string; people: { email: string; name: string; role: Role }[] }[] = [
   {
