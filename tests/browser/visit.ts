@@ -82,8 +82,8 @@ export async function visit(options: VisitOptions = {}): Promise<Visit> {
   if (options.role) {
     await page.goto("/");
     await page.getByRole("button", { name: `as ${options.role}` }).click();
-    await page.waitForURL(/\/lab\/[^/]+$/);
-    labPath = new URL(page.url()).pathname;
+    await page.waitForURL(/\/lab\/[^/]+\/scenarios\//);
+    labPath = new URL(page.url()).pathname.replace(/\/scenarios\/.*/, "");
   }
   return { page, faults, labPath };
 }

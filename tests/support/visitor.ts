@@ -36,10 +36,10 @@ export class Visitor {
     return this.request("POST", path, { form, headers });
   }
 
-  /** Enters the demo lab in a role and returns the lab's path. */
+  /** Enters the demo lab in a role; the entrance leads to a scenario, returned is the lab's path. */
   async enterDemo(role: "owner" | "researcher" | "viewer"): Promise<string> {
     const response = await this.post("/demo", { role });
     if (response.status !== 303) throw new Error(`The demo entrance answered ${response.status}`);
-    return response.headers.get("location")!;
+    return /^\/lab\/[^/]+/.exec(response.headers.get("location")!)![0];
   }
 }
