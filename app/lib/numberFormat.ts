@@ -27,7 +27,7 @@ export const superscript = (integer: number): string =>
 /** Replace the hyphen of a numeral by a true minus. */
 const withMinus = (numeral: string): string => numeral.replace("-", "−");
 
-export interface NumberParts {
+interface NumberParts {
   /** Sign and digits, with a true minus. */
   mantissa: string;
   /** Power of ten, or null where the number is printed without one. */
@@ -43,7 +43,7 @@ const isPlain = (exponent: number): boolean => exponent >= -3 && exponent < 4;
  * @param value any finite number; others give "–", since a table must not show NaN
  * @param significant significant digits, at least 1; absent: the shortest text that reads back as the same number
  */
-export function numberParts(value: number, significant?: number): NumberParts {
+function numberParts(value: number, significant?: number): NumberParts {
   if (!Number.isFinite(value)) return { mantissa: "–", exponent: null };
   if (value === 0) return { mantissa: "0", exponent: null };
   const [digits, power] = value.toExponential(significant === undefined ? undefined : significant - 1).split("e");

@@ -1,7 +1,7 @@
 import type { KeyboardEvent } from "react";
 import { RichText } from "~/components/ui/RichText";
 
-export interface Tab {
+interface Tab {
   id: string;
   /** Notation of `richText.ts`. */
   label: string;

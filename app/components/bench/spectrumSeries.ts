@@ -33,7 +33,7 @@ export const predictionId = "prediction";
 const marks = ["circle", "square", "triangle"] as const;
 
 /** Words for the operating point of a solved spectrum: "open circuit, V = 1.008 V". */
-export function pointWords(spectrum: SpectrumResult): string {
+function pointWords(spectrum: SpectrumResult): string {
   const { bias } = spectrum;
   const voltage = spectrum.status === "solved" ? spectrum.operatingPoint.voltageV : null;
   if (bias !== "openCircuit" || voltage === null) return biasWords(bias);
