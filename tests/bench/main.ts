@@ -12,6 +12,7 @@ const benches: Record<string, () => Promise<{ run: Bench }>> = {
   smallSignal: () => import("./smallSignal.ts"),
   closedForm: () => import("./closedForm.ts"),
   drag: () => import("./drag.ts"),
+  robustness: () => import("./robustness.ts"),
 };
 
 const asked = process.argv.slice(2);
