@@ -1,4 +1,5 @@
 /** The operating points of one cell: each solved once, later ones from their neighbours. */
+import { thermalVoltage } from "../constants.ts";
 import { type Device, deviceOf, fluxToSI } from "../scenario/device.ts";
 import { refuse } from "../scenario/errors.ts";
 import type { ResolvedScenario } from "../scenario/resolved.ts";
@@ -6,8 +7,10 @@ import type { Bias } from "../scenario/schema.ts";
 import { ContactRefusal } from "./contacts.ts";
 import { type SteadyOptions, type SteadyState, steadyState } from "./continuation.ts";
 import { type HeldIons, holdIons } from "./ions.ts";
+import { buildMesh } from "./mesh.ts";
 import type { Operation } from "./newton.ts";
 import { type Problem, prepareProblem } from "./problem.ts";
+import { largestMesh, refinedMesh, stretchedMesh } from "./refinement.ts";
 import { type State, transferState } from "./state.ts";
 
 /** A steady state as the terminals see it. */
@@ -28,47 +31,59 @@ const operationOf = (bias: Bias): Operation =>
     ? { kind: "openCircuit" }
     : { kind: "voltage", voltage: bias === "shortCircuit" ? 0 : bias.voltageV };
 
-/** The problem of a device. @throws ScenarioError where the stack or its mesh cannot be solved */
-function problemOf(device: Device, nodes: number | null): Problem {
-  const fewest = 2 * device.layers.length + 1;
-  if (nodes !== null && nodes < fewest)
-    refuse("model.nodes", `is ${nodes} for ${device.layers.length} layers`, `${fewest} or more for this stack`);
-  try {
-    return prepareProblem(device, nodes);
-  } catch (error) {
-    if (error instanceof ContactRefusal) refuse(error.path, error.message, error.allowed);
-    throw error;
-  }
-}
+/** Refinements of the mesh to a state. */
+const refinements = 2;
 
 export class OperatingPoints {
-  readonly problem: Problem;
+  readonly device: Device;
+  private readonly nodes: number | null;
   private readonly options: Omit<SteadyOptions, "start">;
   private readonly known = new Map<string, OperatingPoint>();
   private previous: OperatingPoints | null;
-  private held: HeldIons | SteadyState | null = null;
-  private latest: State | null = null;
+  private readonly first: Problem;
+  private latest: OperatingPoint | null = null;
+  private frozen: { problem: Problem; steady: SteadyState } | null = null;
 
-  /** @param previous those of a neighbouring cell (one value changed), to begin from */
-  constructor(problem: Problem, options: Omit<SteadyOptions, "start"> = {}, previous: OperatingPoints | null = null) {
-    this.problem = problem;
+  /**
+   * @param nodes total number of mesh nodes, null for the default
+   * @param previous those of a neighbouring cell (one value changed), to begin from
+   * @throws ScenarioError where a carrier could neither leave nor recombine, or there are too few nodes for the layers
+   */
+  constructor(
+    device: Device,
+    nodes: number | null,
+    options: Omit<SteadyOptions, "start"> = {},
+    previous: OperatingPoints | null = null,
+  ) {
+    const fewest = 2 * device.layers.length + 1;
+    if (nodes !== null && nodes < fewest)
+      refuse("model.nodes", `is ${nodes} for ${device.layers.length} layers`, `${fewest} or more for this stack`);
+    this.device = device;
+    this.nodes = nodes;
     this.options = options;
-    this.previous = previous;
+    this.previous = previous?.nodes === nodes ? previous : null;
+    try {
+      this.first = prepareProblem(device, buildMesh(device.layers, thermalVoltage(device.temperature), nodes));
+    } catch (error) {
+      if (error instanceof ContactRefusal) refuse(error.path, error.message, error.allowed);
+      throw error;
+    }
   }
 
-  /** Frozen ions, solved once; null where ions follow; the failed steady state where their bias has none. */
-  private ions(): HeldIons | SteadyState | null {
-    const { ionsFrozenAt } = this.problem.device;
-    if (!ionsFrozenAt || this.problem.ions.length === 0) return null;
-    if (!this.held) {
+  /** Frozen ions on the mesh of a problem; null where ions follow; the failed steady state where their bias has none. */
+  private ions(problem: Problem): { held: HeldIons; state: State } | SteadyState | null {
+    const { ionsFrozenAt } = this.device;
+    if (!ionsFrozenAt || problem.ions.length === 0) return null;
+    if (this.frozen?.problem !== problem) {
+      const start = this.frozen && transferState(this.frozen.problem, this.frozen.steady.state, problem);
       const drive = { flux: ionsFrozenAt.flux, heldIons: null };
-      const steady = steadyState(this.problem, operationOf(ionsFrozenAt.bias), drive, this.options);
-      this.held =
-        steady.status === "solved"
-          ? holdIons(this.problem, steady.state)
-          : { ...steady, step: `ions before they were frozen: ${steady.step}` };
+      const options = { ...this.options, start: start ?? undefined };
+      const steady = steadyState(problem, operationOf(ionsFrozenAt.bias), drive, options);
+      this.frozen = { problem, steady };
     }
-    return this.held;
+    const { steady } = this.frozen;
+    if (steady.status !== "solved") return { ...steady, step: `ions before they were frozen: ${steady.step}` };
+    return { held: holdIons(problem, steady.state), state: steady.state };
   }
 
   /** Let the neighbouring cell go: a chain of them would keep every state there ever was. */
@@ -77,20 +92,22 @@ export class OperatingPoints {
   }
 
   /**
-   * The state to begin from: the same operating point of the neighbouring cell, one of the same kind (its light or its
+   * Where to begin: the same operating point of the neighbouring cell on its mesh, one of the same kind (its light or its
    * voltage may be what moved), or the last one of this cell.
    */
-  private start(key: string, bias: Bias): State | undefined {
+  private start(key: string, bias: Bias): { problem: Problem; state: State | undefined } {
     const neighbour =
       this.previous?.known.get(key) ??
       [...(this.previous?.known.values() ?? [])].findLast(
         (point) => typeof point.bias === typeof bias && (typeof bias === "object" || point.bias === bias),
       );
-    if (neighbour?.steady.status === "solved") {
-      const moved = transferState(neighbour.problem, neighbour.steady.state, this.problem);
-      if (moved) return moved;
+    const mesh = neighbour?.steady.status === "solved" && stretchedMesh(neighbour.problem, this.device);
+    if (neighbour && mesh) {
+      const problem = prepareProblem(this.device, mesh);
+      return { problem, state: transferState(neighbour.problem, neighbour.steady.state, problem) ?? undefined };
     }
-    return this.latest ?? undefined;
+    const latest = this.latest && transferState(this.latest.problem, this.latest.steady.state, this.first);
+    return { problem: this.first, state: latest ?? undefined };
   }
 
   /** The operating point at a bias and a photon flux (cm⁻² s⁻¹); its steady state says whether it was reached. */
@@ -98,29 +115,44 @@ export class OperatingPoints {
     const key = JSON.stringify([bias, fluxPerCm2S]);
     const known = this.known.get(key);
     if (known) return known;
-    const { problem } = this;
     const operation = operationOf(bias);
-    const ions = this.ions();
-    const steady =
-      ions && "status" in ions
-        ? ions
-        : steadyState(
-            problem,
-            operation,
-            { flux: fluxToSI(fluxPerCm2S), heldIons: ions },
-            { ...this.options, start: this.start(key, bias) },
-          );
-    if (steady.status === "solved") this.latest = steady.state;
-    const inside = steady.state.voltage * problem.thermalVoltage;
+    let { problem, state } = this.start(key, bias);
+    let reached: { problem: Problem; steady: SteadyState } | null = null;
+    for (let refinement = 0; refinement <= refinements; refinement++) {
+      const ions = this.ions(problem);
+      const steady: SteadyState =
+        ions && "status" in ions
+          ? ions
+          : steadyState(
+              problem,
+              operation,
+              { flux: fluxToSI(fluxPerCm2S), heldIons: ions?.held ?? null },
+              { ...this.options, start: state },
+            );
+      // A state that was reached on the first mesh stands where the finer mesh gives none.
+      if (reached && steady.status !== "solved" && steady.status !== "aborted") break;
+      reached = { problem, steady };
+      if (steady.status !== "solved" || refinement === refinements) break;
+      const states = ions && "held" in ions ? [steady.state, ions.state] : [steady.state];
+      const mesh = refinedMesh(problem, states, this.nodes, largestMesh(this.first));
+      if (!mesh) break;
+      const finer = prepareProblem(this.device, mesh);
+      state = transferState(problem, steady.state, finer) ?? undefined;
+      problem = finer;
+    }
+    const { steady } = reached!;
+    const { circuit } = this.device;
+    const inside = steady.state.voltage * reached!.problem.thermalVoltage;
     const point: OperatingPoint = {
-      problem,
+      problem: reached!.problem,
       bias,
       fluxPerCm2S,
       steady,
       voltage: operation.kind === "voltage" ? operation.voltage : inside,
-      current: operation.kind === "openCircuit" ? 0 : steady.current - inside / problem.device.circuit.shuntResistance,
+      current: operation.kind === "openCircuit" ? 0 : steady.current - inside / circuit.shuntResistance,
     };
-    // What was stopped or ran out of budget may be asked for again.
+    if (steady.status === "solved") this.latest = point;
+    // What was stopped may be asked for again.
     if (steady.status !== "aborted") this.known.set(key, point);
     return point;
   }
@@ -137,5 +169,5 @@ export function operatingPointsOf(
   previous: OperatingPoints | null = null,
 ): OperatingPoints {
   const nodes = scenario.model.kind === "driftDiffusion" ? scenario.model.nodes : null;
-  return new OperatingPoints(problemOf(deviceOf(scenario), nodes), options, previous);
+  return new OperatingPoints(deviceOf(scenario), nodes, options, previous);
 }

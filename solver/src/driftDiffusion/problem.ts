@@ -17,7 +17,7 @@ import { type Interval, lightThrough, type Wavelength } from "../light/generatio
 import type { Device } from "../scenario/device.ts";
 import { type ContactTable, contactTable, refuseIsolatedCarriers } from "./contacts.ts";
 import { type IonGroup, ionGroups } from "./ions.ts";
-import { buildMesh } from "./mesh.ts";
+import type { Mesh } from "./mesh.ts";
 import { type InterfaceTable, interfaceTable, type LayerTable, layerTable } from "./recombination.ts";
 
 export interface Problem {
@@ -87,14 +87,12 @@ function pieces(device: Device, x: Float64Array, edgeLayer: Int32Array): Pieces 
 }
 
 /**
- * Prepare a device for solving.
- * @param nodes total number of mesh nodes, null for the default mesh
+ * Prepare a device for solving on a mesh.
  * @throws ContactRefusal where a carrier could neither recombine nor leave
  */
-export function prepareProblem(device: Device, nodes: number | null): Problem {
+export function prepareProblem(device: Device, { x, edgeLayer }: Mesh): Problem {
   refuseIsolatedCarriers(device);
   const thermalVoltage = thermalVoltageAt(device.temperature);
-  const { x, edgeLayer } = buildMesh(device.layers, thermalVoltage, nodes);
   const edges = edgeLayer.length;
   const spacing = new Float64Array(edges);
   const electronConductance = new Float64Array(edges);

@@ -14,7 +14,7 @@ import { edgeFlux, fieldFactor, flux } from "./fluxes.ts";
 import { holdIons } from "./ions.ts";
 import type { OperatingPoint, OperatingPoints } from "./operatingPoints.ts";
 import type { Problem } from "./problem.ts";
-import { excessProduct } from "./recombination.ts";
+import { excessProduct, layerRates } from "./recombination.ts";
 import type { State } from "./state.ts";
 import { boltzmann } from "./statistics.ts";
 
@@ -106,12 +106,10 @@ function profilesAt(point: OperatingPoint): Profiles {
   const electrons = (i: number, k: number) =>
     boltzmann(layers.electronLevel[k] + state.potential[i] + state.electronEnergy[i]);
   const holes = (i: number, k: number) => boltzmann(layers.holeLevel[k] - state.potential[i] - state.holeEnergy[i]);
-  const excess = (i: number, k: number) =>
-    excessProduct(
-      electrons(i, k) * holes(i, k),
-      layers.intrinsicSquared[k],
-      state.electronEnergy[i] - state.holeEnergy[i],
-    );
+  const rates = Array.from(points.node, (i, p) => {
+    const k = points.layer[p];
+    return layerRates(layers, k, electrons(i, k), holes(i, k), state.electronEnergy[i] - state.holeEnergy[i]);
+  });
   const field = new Float64Array(edgeLayer.length);
   const electronCurrent = new Float64Array(edgeLayer.length);
   const holeCurrent = new Float64Array(edgeLayer.length);
@@ -163,17 +161,9 @@ function profilesAt(point: OperatingPoint): Profiles {
     anionsPerCm3: perNode(ions.anions, (k) => device.layers[k].anions > 0),
     trapOccupancy: atPoints((i, k) => (layers.trapDensity[k] > 0 ? traps(i, k) : 0)),
     generationPerCm3S: atPoints((i, k) => generationAt(problem, generation, width, i, k)),
-    shockleyReadHallPerCm3S: atPoints((i, k) =>
-      layers.electronLifetime[k] < Infinity
-        ? (excess(i, k) * 1e-6) /
-          (layers.holeLifetime[k] * (electrons(i, k) + layers.trapElectrons[k]) +
-            layers.electronLifetime[k] * (holes(i, k) + layers.trapHoles[k]))
-        : 0,
-    ),
-    bandToBandPerCm3S: atPoints((i, k) => layers.radiative[k] * excess(i, k) * 1e-6),
-    augerPerCm3S: atPoints(
-      (i, k) => (layers.augerElectron[k] * electrons(i, k) + layers.augerHole[k] * holes(i, k)) * excess(i, k) * 1e-6,
-    ),
+    shockleyReadHallPerCm3S: Float64Array.from(rates, (rate) => rate.shockleyReadHall * 1e-6),
+    bandToBandPerCm3S: Float64Array.from(rates, (rate) => rate.bandToBand * 1e-6),
+    augerPerCm3S: Float64Array.from(rates, (rate) => rate.auger * 1e-6),
     electronCurrentMAPerCm2: edgesToPoints(problem, points, electronCurrent),
     holeCurrentMAPerCm2: edgesToPoints(problem, points, holeCurrent),
     interfaces: interfaceRates(problem, state),

@@ -94,3 +94,25 @@ export function interfaceTable(device: Device, edgeLayer: Int32Array, thermalVol
 export function excessProduct(product: number, intrinsicSquared: number, splitting: number): number {
   return splitting >= 0 ? -product * Math.expm1(-splitting) : intrinsicSquared * Math.expm1(splitting);
 }
+
+/** Net recombination rate in a layer, m⁻³ s⁻¹, by kind. */
+export interface Rates {
+  shockleyReadHall: number;
+  bandToBand: number;
+  auger: number;
+}
+
+/** Rates of a layer at given densities (m⁻³); `splitting` = u_n − u_p. */
+export function layerRates(layers: LayerTable, layer: number, n: number, p: number, splitting: number): Rates {
+  const excess = excessProduct(n * p, layers.intrinsicSquared[layer], splitting);
+  const electronLifetime = layers.electronLifetime[layer];
+  const holeLifetime = layers.holeLifetime[layer];
+  return {
+    shockleyReadHall:
+      electronLifetime < Infinity
+        ? excess / (holeLifetime * (n + layers.trapElectrons[layer]) + electronLifetime * (p + layers.trapHoles[layer]))
+        : 0,
+    bandToBand: layers.radiative[layer] * excess,
+    auger: (layers.augerElectron[layer] * n + layers.augerHole[layer] * p) * excess,
+  };
+}

@@ -47,7 +47,7 @@ export function solveDriftDiffusion(
     if (steady.status !== "solved") return { ...head, status: steady.status, failure: failureOf(point) };
     let response = responses.get(point);
     if (!response) {
-      response = respond(linearise(points.problem, steady.state, steady.drive), frequencies, options.signal);
+      response = respond(linearise(point.problem, steady.state, steady.drive), frequencies, options.signal);
       responses.set(point, response);
       for (const warning of stateWarnings(point))
         if (!warnings.some(({ path }) => path === warning.path)) warnings.push(warning);
