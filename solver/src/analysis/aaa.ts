@@ -246,6 +246,7 @@ function complexPoles(form: BarycentricForm): Complex[] {
   realEigenvalues.forEach((re, k) => {
     if (!(imaginaryEigenvalues[k] > 0)) return;
     const pole = polish(form, complex(re, imaginaryEigenvalues[k]));
+    if (pole === null) return;
     const isReal = Math.abs(pole.im) < 1e-4 * modulus(pole);
     const isKnown = found.some((other) => modulus(subtract(other, pole)) < 1e-6 * modulus(pole));
     if (!isReal && pole.im > 0 && !isKnown) found.push(pole);
@@ -253,16 +254,19 @@ function complexPoles(form: BarycentricForm): Complex[] {
   return found.flatMap((pole) => [pole, complex(pole.re, -pole.im)]);
 }
 
-function polish(form: BarycentricForm, start: Complex): Complex {
+/** Newton steps to a zero of the denominator; null where they do not lead to one near the start. */
+function polish(form: BarycentricForm, start: Complex): Complex | null {
   let s = start;
-  for (let step = 0; step < 8; step++) {
+  let size = 1;
+  for (let step = 0; step < 20; step++) {
     const { denominator, slope } = quotient(form, s);
     const change = divide(denominator, slope);
-    if (!Number.isFinite(change.re) || !Number.isFinite(change.im) || modulus(change) > 0.3 * modulus(s)) return s;
+    if (!(modulus(change) < 0.5 * modulus(s))) return null;
     s = subtract(s, change);
-    if (modulus(change) < 1e-14 * modulus(s)) break;
+    size = modulus(change) / modulus(s);
+    if (size < 1e-13) return s;
   }
-  return s;
+  return size < 1e-5 ? s : null;
 }
 
 /** Residue of the rational function at a simple pole, unit of the spectrum times that of omega. */

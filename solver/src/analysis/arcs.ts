@@ -66,8 +66,8 @@ export interface ArcAnalysis {
   };
 }
 
-/** Neighbouring terms further apart than this factor are separate processes (first two poles of a diffusion film: 9). */
-const chainRatio = 16;
+/** Neighbouring terms further apart than this factor are separate processes (a film's first two poles: 9, with recombination more). */
+const chainRatio = 28;
 /** A valley this deep, relative to the lower of its two maxima, separates two arcs. */
 const valleyDepth = 0.95;
 /** The other half plane may hold this share of a spiral's height. */
@@ -226,7 +226,10 @@ function joinSpirals(runs: Group[]): Group[] {
 /** Valleys of |Im| between maxima, ln ω. */
 function valleysOf(group: Group): number[] {
   const omegas = scan(group);
-  const values = omegas.map((omega) => Math.abs(imaginary(group, omega)));
+  const signed = omegas.map((omega) => imaginary(group, omega));
+  // only the half plane of the highest point: where a spiral crosses into the other one is no valley
+  const sign = Math.max(...signed) > -Math.min(...signed) ? 1 : -1;
+  const values = signed.map((value) => Math.max(0, sign * value));
   const valleys: number[] = [];
   let top = 0;
   let low = Infinity;
@@ -450,6 +453,15 @@ function thinned({ omega, re, im }: Samples): Samples {
   return { omega: kept.map((k) => omega[k]), re: kept.map((k) => re[k]), im: kept.map((k) => im[k]) };
 }
 
+/** Terms and a constant give the spectrum: false where poles of a spiral far outside the window were not found. */
+function addsUp({ terms }: Description, { omega, re, im }: Samples, largest: number): boolean {
+  const rest = Array.from(omega, (value, k) =>
+    terms.reduce((sum, term) => subtract(sum, term.at(value)), complex(re[k], im[k])),
+  );
+  const constant = rest.reduce((sum, { re }) => sum + re, 0) / rest.length;
+  return rest.every(({ re, im }) => Math.hypot(re - constant, im) < 1e-2 * largest);
+}
+
 function describe(all: Samples, largest: number): { description: Description; noise: number } {
   const samples = all.omega.length > manyPoints ? thinned(all) : all;
   const background = backgroundOf(samples);
@@ -468,6 +480,7 @@ function describe(all: Samples, largest: number): { description: Description; no
     deviation: rational.rmsError,
     at: (omega) => evaluate(rational, complex(0, omega)),
   };
+  if (!addsUp(clean, samples, largest)) return { description: fromElements(model.search(6, 0, 0)), noise };
   if (clean.terms.length < manyTerms) return { description: clean, noise };
   const seeds: Draft[] = groupsOf(clean.terms, largest).map((group) => ({
     shape: "depressed",
