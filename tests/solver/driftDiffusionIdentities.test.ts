@@ -209,108 +209,111 @@ describe.each(stacks)("%s", (_, given) => {
   }, 120_000);
 });
 
-test("W = Q·Z to 10⁻⁹ when W is solved with the voltage as an unknown of one dense system", () => {
-  const given = everything;
-  const scenario = parseScenario({ ...given, model: { kind: "driftDiffusion", nodes: 25 } });
-  const point = operatingPointsOf(scenario).at({ voltageV: 0.6 }, 8e16);
-  const { system, state, problem } = linearise(point.problem, point.steady.state, point.steady.drive);
-  const { nodes, blockSize: m, byStep, byMean } = system;
-  const count = nodes * m + 2 * (nodes - 1) * m;
-  const size = count + 1;
-  const stepAt = (e: number, c: number) => nodes * m + e * m + c;
-  const fluxAt = (e: number, row: number) => stepAt(nodes - 1 + e, row);
-  const [light, emf] = [system.drives[0].atNodes!, system.drives[1].inEdges!];
-  for (const omega of [1e-1, 1e4, 1e8]) {
-    // Rows: balances, steps, fluxes, no current through the circuit; unknowns: deviations, their steps, fluxes, δv. The
-    // steps are unknowns of their own because a difference of two deviations would have lost them.
-    const dense = Matrix.zeros(2 * size, 2 * size);
-    const put = (row: number, column: number, re: number, im: number) => {
-      for (const [a, b, value] of [
-        [row, column, re],
-        [row + size, column + size, re],
-        [row + size, column, im],
-        [row, column + size, -im],
-      ])
-        dense.set(a, b, dense.get(a, b) + value);
-    };
-    for (let e = 0; e < nodes - 1; e++)
-      for (let row = 0; row < m; row++) {
-        const target = fluxAt(e, row);
-        put(target, target, -1, 0);
-        for (let c = 0; c < m; c++) {
-          const at = (e * m + row) * m + c;
-          put(target, e * m + c, 0.5 * byMean[at], 0);
-          put(target, (e + 1) * m + c, 0.5 * byMean[at], 0);
-          put(target, stepAt(e, c), byStep[at], 0);
+test.each(stacks)(
+  "W = Q·Z to 10⁻⁹ when W is solved with the voltage as an unknown of one dense system: %s",
+  (_, given) => {
+    const scenario = parseScenario({ ...given, model: { kind: "driftDiffusion", nodes: 25 } });
+    const point = operatingPointsOf(scenario).at({ voltageV: 0.6 }, 8e16);
+    const { system, state, problem } = linearise(point.problem, point.steady.state, point.steady.drive);
+    const { nodes, blockSize: m, byStep, byMean } = system;
+    const count = nodes * m + 2 * (nodes - 1) * m;
+    const size = count + 1;
+    const stepAt = (e: number, c: number) => nodes * m + e * m + c;
+    const fluxAt = (e: number, row: number) => stepAt(nodes - 1 + e, row);
+    const [light, emf] = [system.drives[0].atNodes!, system.drives[1].inEdges!];
+    for (const omega of [1e-1, 1e4, 1e8]) {
+      // Rows: balances, steps, fluxes, no current through the circuit; unknowns: deviations, their steps, fluxes, δv. The
+      // steps are unknowns of their own because a difference of two deviations would have lost them.
+      const dense = Matrix.zeros(2 * size, 2 * size);
+      const put = (row: number, column: number, re: number, im: number) => {
+        for (const [a, b, value] of [
+          [row, column, re],
+          [row + size, column + size, re],
+          [row + size, column, im],
+          [row, column + size, -im],
+        ])
+          dense.set(a, b, dense.get(a, b) + value);
+      };
+      for (let e = 0; e < nodes - 1; e++)
+        for (let row = 0; row < m; row++) {
+          const target = fluxAt(e, row);
+          put(target, target, -1, 0);
+          for (let c = 0; c < m; c++) {
+            const at = (e * m + row) * m + c;
+            put(target, e * m + c, 0.5 * byMean[at], 0);
+            put(target, (e + 1) * m + c, 0.5 * byMean[at], 0);
+            put(target, stepAt(e, c), byStep[at], 0);
+          }
+          put(target, count, emf[e * m + row], 0);
+          put(stepAt(e, row), stepAt(e, row), -1, 0);
+          put(stepAt(e, row), e * m + row, -1, 0);
+          put(stepAt(e, row), (e + 1) * m + row, 1, 0);
         }
-        put(target, count, emf[e * m + row], 0);
-        put(stepAt(e, row), stepAt(e, row), -1, 0);
-        put(stepAt(e, row), e * m + row, -1, 0);
-        put(stepAt(e, row), (e + 1) * m + row, 1, 0);
-      }
-    for (let i = 0; i < nodes; i++)
-      for (let row = 0; row < m; row++) {
-        const target = i * m + row;
-        if (system.held?.[target]) {
-          put(target, target, 1, 0);
-          continue;
+      for (let i = 0; i < nodes; i++)
+        for (let row = 0; row < m; row++) {
+          const target = i * m + row;
+          if (system.held?.[target]) {
+            put(target, target, 1, 0);
+            continue;
+          }
+          if (i < nodes - 1) put(target, fluxAt(i, row), -1, 0);
+          if (i > 0) put(target, fluxAt(i - 1, row), 1, 0);
+          for (let c = 0; c < m; c++)
+            put(target, i * m + c, system.local[target * m + c], omega * system.storage[target * m + c]);
         }
-        if (i < nodes - 1) put(target, fluxAt(i, row), -1, 0);
-        if (i > 0) put(target, fluxAt(i - 1, row), 1, 0);
-        for (let c = 0; c < m; c++)
-          put(target, i * m + c, system.local[target * m + c], omega * system.storage[target * m + c]);
+      for (const { node, decay, column, row } of system.relaxations ?? []) {
+        const length = decay * decay + omega * omega;
+        for (let a = 0; a < m; a++)
+          for (let c = 0; c < m; c++)
+            if (!system.held?.[node * m + a])
+              put(
+                node * m + a,
+                node * m + c,
+                (column[a] * row[c] * decay) / length,
+                (-column[a] * row[c] * omega) / length,
+              );
       }
-    for (const { node, decay, column, row } of system.relaxations ?? []) {
-      const length = decay * decay + omega * omega;
-      for (let a = 0; a < m; a++)
-        for (let c = 0; c < m; c++)
-          if (!system.held?.[node * m + a])
-            put(
-              node * m + a,
-              node * m + c,
-              (column[a] * row[c] * decay) / length,
-              (-column[a] * row[c] * omega) / length,
-            );
+      for (let row = 0; row < m; row++)
+        put(count, fluxAt(state.cut, row), system.reading.weight[row], omega * system.reading.harmonicWeight[row]);
+      const { shuntResistance, parallelCapacitance } = problem.device.circuit;
+      const perVoltage = thermalVoltage(300) / 1.602176634e-19;
+      // J_x/q less what shunt and capacitance take: with the sign of the delivered current.
+      put(
+        count,
+        count,
+        (-problem.sign * perVoltage) / shuntResistance,
+        -problem.sign * omega * parallelCapacitance * perVoltage,
+      );
+      const scale = dense.to2DArray().map((row) => 1 / Math.max(...row.map(Math.abs)));
+      const right = Matrix.zeros(2 * size, 1);
+      light.forEach((value, row) => {
+        right.set(row, 0, value * scale[row]);
+      });
+      for (let row = 0; row < 2 * size; row++) dense.mulRow(row, scale[row]);
+      const solution = solveDense(dense, right);
+      const unit = (thermalVoltage(300) / 1.602176634e-19) * 1e4;
+      const direct = { re: solution.get(count, 0) * unit, im: solution.get(count + size, 0) * unit };
+      const product = solvedSpectra({
+        ...given,
+        light: { ...given.light, fluxPerCm2S: 8e16 },
+        model: { kind: "driftDiffusion", nodes: 25 },
+        spectra: [
+          { technique: "imps", bias: { voltageV: 0.6 } },
+          { technique: "impedance", bias: { voltageV: 0.6 } },
+        ],
+        frequencies: { listHz: [omega / (2 * Math.PI)] },
+      });
+      const [q, z] = product;
+      const expected = {
+        re: q.re[0] * z.re[0] - q.im[0] * z.im[0],
+        im: q.re[0] * z.im[0] + q.im[0] * z.re[0],
+      };
+      const error = Math.hypot(direct.re - expected.re, direct.im - expected.im);
+      expect(error / Math.hypot(expected.re, expected.im)).toBeLessThan(1e-9);
     }
-    for (let row = 0; row < m; row++)
-      put(count, fluxAt(state.cut, row), system.reading.weight[row], omega * system.reading.harmonicWeight[row]);
-    const { shuntResistance, parallelCapacitance } = problem.device.circuit;
-    const perVoltage = thermalVoltage(300) / 1.602176634e-19;
-    // J_x/q less what shunt and capacitance take: with the sign of the delivered current.
-    put(
-      count,
-      count,
-      (-problem.sign * perVoltage) / shuntResistance,
-      -problem.sign * omega * parallelCapacitance * perVoltage,
-    );
-    const scale = dense.to2DArray().map((row) => 1 / Math.max(...row.map(Math.abs)));
-    const right = Matrix.zeros(2 * size, 1);
-    light.forEach((value, row) => {
-      right.set(row, 0, value * scale[row]);
-    });
-    for (let row = 0; row < 2 * size; row++) dense.mulRow(row, scale[row]);
-    const solution = solveDense(dense, right);
-    const unit = (thermalVoltage(300) / 1.602176634e-19) * 1e4;
-    const direct = { re: solution.get(count, 0) * unit, im: solution.get(count + size, 0) * unit };
-    const product = solvedSpectra({
-      ...given,
-      light: { ...given.light, fluxPerCm2S: 8e16 },
-      model: { kind: "driftDiffusion", nodes: 25 },
-      spectra: [
-        { technique: "imps", bias: { voltageV: 0.6 } },
-        { technique: "impedance", bias: { voltageV: 0.6 } },
-      ],
-      frequencies: { listHz: [omega / (2 * Math.PI)] },
-    });
-    const [q, z] = product;
-    const expected = {
-      re: q.re[0] * z.re[0] - q.im[0] * z.im[0],
-      im: q.re[0] * z.im[0] + q.im[0] * z.re[0],
-    };
-    const error = Math.hypot(direct.re - expected.re, direct.im - expected.im);
-    expect(error / Math.hypot(expected.re, expected.im)).toBeLessThan(1e-9);
-  }
-}, 60_000);
+  },
+  60_000,
+);
 
 test("converges with the second order of the spacing over four meshes", () => {
   const smooth = document(
