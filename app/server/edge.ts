@@ -15,7 +15,7 @@ import { stopping } from "~/services/lifetime.server";
 import { limits } from "~/services/limits.server";
 import { log } from "~/services/log.server";
 import { projectFolder, type Settings } from "~/services/settings.server";
-import { contentPolicy, fixedHeaders, workerPolicy } from "./headers";
+import { contentPolicy, fixedHeaders, isSharePath, shareHeaders, workerPolicy } from "./headers";
 
 const unsafe = (method: string) => !["GET", "HEAD", "OPTIONS"].includes(method);
 
@@ -89,6 +89,7 @@ export function createEdge(
     const started = performance.now();
     response.locals.id = randomBytes(8).toString("hex");
     response.set({ ...fixedHeaders(settings.secure), "X-Request-Id": response.locals.id });
+    if (isSharePath(request.path)) response.set(shareHeaders);
     response.on("finish", () =>
       log.info({
         event: "request",

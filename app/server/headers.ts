@@ -14,6 +14,15 @@ export function fixedHeaders(secure: boolean): Record<string, string> {
   };
 }
 
+/** For whatever has to do with a share link: its secret was in an address, so no other site may learn that address. */
+export const shareHeaders: Record<string, string> = {
+  "Referrer-Policy": "no-referrer",
+  "X-Robots-Tag": "noindex, nofollow",
+};
+
+/** Whether a path belongs to a share link. */
+export const isSharePath = (path: string): boolean => /^\/(?:s|shared)\//.test(path);
+
 /** For pages. */
 export function contentPolicy(nonce: string): string {
   return [

@@ -4,13 +4,6 @@ import { findShare, type Share, type ShareState } from "~/models/shares.server";
 import { notFound } from "./authorisation.server";
 import { siteCookie } from "./session.server";
 
-/** For every answer that has to do with a share link. */
-export const shareHeaders = {
-  "Cache-Control": "no-store",
-  "Referrer-Policy": "no-referrer",
-  "X-Robots-Tag": "noindex, nofollow",
-} as const;
-
 const isId = (text: string) => /^[0-9A-Z]{26}$/.test(text);
 
 /** The cookie of one link; it lives as long as the link. */
@@ -18,10 +11,10 @@ export const shareCookie = (shareId: string, seconds: number) => siteCookie(`sha
 
 /** Says in a plain page why a link shows nothing any more. */
 export function goneOrUnknown(state: Exclude<ShareState["state"], "open">) {
-  if (state === "unknown") return data("This share link is not known here.", { status: 404, headers: shareHeaders });
+  if (state === "unknown") return data("This share link is not known here.", { status: 404 });
   const reason =
     state === "expired" ? "This share link has expired." : "This share link was revoked by the lab that made it.";
-  return data(`${reason} Ask whoever sent it for a new one.`, { status: 410, headers: shareHeaders });
+  return data(`${reason} Ask whoever sent it for a new one.`, { status: 410 });
 }
 
 /**

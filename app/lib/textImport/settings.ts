@@ -1,5 +1,8 @@
-/** What a person can correct about the reading of a file. Everything left out is decided from the file itself. */
-import { z } from "zod";
+/**
+ * What a person can correct about the reading of a file. Everything left out is decided from the file itself.
+ * The small build of zod, because this runs in the page, where the content policy forbids generated code.
+ */
+import * as z from "zod/mini";
 
 export const encodings = ["utf-8", "utf-16le", "utf-16be", "windows-1252"] as const;
 export const delimiters = ["tab", "semicolon", "comma", "spaces"] as const;
@@ -21,45 +24,46 @@ export type Delimiter = (typeof delimiters)[number];
 export type DecimalMark = (typeof decimalMarks)[number];
 export type ColumnRole = (typeof columnRoles)[number];
 
+const within = (low: number, high: number) => z.number().check(z.minimum(low), z.maximum(high));
 const direction = z.enum(["asWritten", "reversed"]);
-const bias = z.union([
-  z.enum(["shortCircuit", "openCircuit"]),
-  z.strictObject({ voltageV: z.number().min(-1000).max(1000) }),
-]);
-const flux = z.number().min(0).max(1e20);
+const bias = z.union([z.enum(["shortCircuit", "openCircuit"]), z.strictObject({ voltageV: within(-1000, 1000) })]);
+const place = z.string().check(z.regex(/^\d{1,4}$/));
 
 /** Conditions of the measurement; for all spectra of the file, or for one of them. */
 const conditions = {
-  technique: z.enum(["imps", "imvs", "impedance"]).optional(),
-  bias: bias.optional(),
+  technique: z.optional(z.enum(["imps", "imvs", "impedance"])),
+  bias: z.optional(bias),
   /** Photons cm⁻² s⁻¹ of the steady light. */
-  fluxPerCm2S: flux.optional(),
-  temperatureK: z.number().min(50).max(1000).optional(),
+  fluxPerCm2S: z.optional(within(0, 1e20)),
+  temperatureK: z.optional(within(50, 1000)),
 };
 
 export const importSettingsSchema = z.strictObject({
-  encoding: z.enum(encodings).optional(),
-  delimiter: z.enum(delimiters).optional(),
-  decimalMark: z.enum(decimalMarks).optional(),
+  encoding: z.optional(z.enum(encodings)),
+  delimiter: z.optional(z.enum(delimiters)),
+  decimalMark: z.optional(z.enum(decimalMarks)),
   /** By column number of the file, from 0. */
-  columns: z
-    .record(
-      z.string().regex(/^\d{1,4}$/),
-      z.strictObject({ role: z.enum(columnRoles).optional(), unit: z.string().max(40).optional() }),
-    )
-    .optional(),
+  columns: z.optional(
+    z.record(
+      place,
+      z.strictObject({
+        role: z.optional(z.enum(columnRoles)),
+        unit: z.optional(z.string().check(z.maxLength(40))),
+      }),
+    ),
+  ),
   /** Sign of Im (or of the phase) after the column's own meaning was followed. */
-  imaginarySign: direction.optional(),
+  imaginarySign: z.optional(direction),
   /** Sign of the whole response. */
-  polarity: direction.optional(),
+  polarity: z.optional(direction),
   /** What a frequency that starts again means. */
-  restart: z.enum(["newSpectrum", "repeat"]).optional(),
+  restart: z.optional(z.enum(["newSpectrum", "repeat"])),
   ...conditions,
-  areaCm2: z.number().positive().max(1e6).optional(),
+  areaCm2: z.optional(within(1e-12, 1e6)),
   /** Amplitude of the modulated flux, photons cm⁻² s⁻¹, where the file holds amplitudes of current or voltage. */
-  modulatedFluxPerCm2S: flux.positive().optional(),
-  wavelengthNm: z.number().min(1).max(1e6).optional(),
-  spectra: z.record(z.string().regex(/^\d{1,4}$/), z.strictObject(conditions)).optional(),
+  modulatedFluxPerCm2S: z.optional(within(1, 1e20)),
+  wavelengthNm: z.optional(within(1, 1e6)),
+  spectra: z.optional(z.record(place, z.strictObject(conditions))),
 });
 
 export type ImportSettings = z.infer<typeof importSettingsSchema>;

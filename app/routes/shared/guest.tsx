@@ -11,7 +11,7 @@ import { listSharedMeasurements } from "~/models/overlays.server";
 import { canActAs } from "~/services/authorisation.server";
 import { actorContext } from "~/services/context.server";
 import { quickPrediction } from "~/services/predictions.server";
-import { requireShare, shareHeaders } from "~/services/shareAccess.server";
+import { requireShare } from "~/services/shareAccess.server";
 import { readTheme } from "~/services/theme.server";
 import type { Route } from "./+types/guest";
 
@@ -38,8 +38,6 @@ export async function loader({ request, context, params }: Route.LoaderArgs) {
     theme,
   };
 }
-
-export const headers: Route.HeadersFunction = () => shareHeaders;
 
 export const meta: Route.MetaFunction = ({ loaderData }) => [
   { title: `${loaderData?.name ?? "Shared scenario"} · Demilune` },

@@ -4,13 +4,13 @@ import { countOpening, findShare } from "~/models/shares.server";
 import { requestContext } from "~/services/context.server";
 import { limits } from "~/services/limits.server";
 import { log } from "~/services/log.server";
-import { goneOrUnknown, shareCookie, shareHeaders } from "~/services/shareAccess.server";
+import { goneOrUnknown, shareCookie } from "~/services/shareAccess.server";
 import type { Route } from "./+types/open";
 
 const tooOften = () =>
   data("Too many share links were opened from here; wait a minute and try again.", {
     status: 429,
-    headers: { ...shareHeaders, "Retry-After": "60" },
+    headers: { "Retry-After": "60" },
   });
 
 /** Takes the secret out of the address at once: into a cookie, and on to an address that holds none. */
@@ -30,11 +30,11 @@ export async function loader({ context, params }: Route.LoaderArgs) {
   const seconds = Math.ceil((share.expiresAt.getTime() - Date.now()) / 1000);
   return redirect(href("/shared/:shareId", { shareId: share.id }), {
     status: 303,
-    headers: { ...shareHeaders, "Set-Cookie": await shareCookie(share.id, seconds).serialize(params.token) },
+    headers: { "Set-Cookie": await shareCookie(share.id, seconds).serialize(params.token) },
   });
 }
 
-export const headers: Route.HeadersFunction = ({ errorHeaders }) => errorHeaders ?? shareHeaders;
+export const headers: Route.HeadersFunction = ({ errorHeaders }) => errorHeaders ?? new Headers();
 
 /** Never shown: the loader leads on or refuses. It is here so that a refusal is a page. */
 export default function OpenShare() {

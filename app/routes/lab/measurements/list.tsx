@@ -146,7 +146,7 @@ export default function Measurements({ loaderData, params: { labId } }: Route.Co
                       <td className="font-semibold">
                         <Link
                           to={href("/lab/:labId/measurements/:measurementId", { labId, measurementId: measurement.id })}
-                          className="text-tide hover:underline"
+                          className="link"
                         >
                           {measurement.name}
                         </Link>
