@@ -52,7 +52,7 @@ async function signIn(actor: Actor): Promise<Visitor> {
   return visitor;
 }
 
-async function labWorld(name: string, owner: Visitor): Promise<LabWorld> {
+async function labWorld(name: string, actor: Actor): Promise<LabWorld> {
   const client = createClient({ url: `file:${server.dataFolder}/demilune.db`, timeout: 10_000 });
   const select = async (sql: string, args: string[]) => {
     const row = (await client.execute({ sql, args })).rows[0];
@@ -60,7 +60,14 @@ async function labWorld(name: string, owner: Visitor): Promise<LabWorld> {
   };
   const id = await select("SELECT id FROM labs WHERE name = ?", [name]);
   if (!id) throw new Error(`There is no lab called ${name}`);
-  return { id, owner, select: (sql) => select(sql, [id]) };
+  return {
+    id,
+    // Looked up at each use: the test that signs out begins a new session.
+    get owner() {
+      return visitors.get(actor)!;
+    },
+    select: (sql) => select(sql, [id]),
+  };
 }
 
 async function pathOf(route: BuiltRoute, lab: LabWorld, objectsOf = lab): Promise<string> {
@@ -79,8 +86,8 @@ beforeAll(async () => {
   server = await startServer();
   for (const actor of actors) visitors.set(actor, await signIn(actor));
   labs = {
-    own: await labWorld("Halden thin-film group", visitors.get("owner")!),
-    other: await labWorld("Kestrel photoelectrode lab", visitors.get("otherOwner")!),
+    own: await labWorld("Halden thin-film group", "owner"),
+    other: await labWorld("Kestrel photoelectrode lab", "otherOwner"),
   };
 });
 afterAll(() => server.stop());
