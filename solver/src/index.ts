@@ -2,6 +2,14 @@
 export { type Arc, type ArcAnalysis, arcsOf, type Curve } from "./analysis/arcs.ts";
 export type { KramersKronig } from "./analysis/kramersKronig.ts";
 export type { Measured } from "./analysis/measured.ts";
+export {
+  type ChoppedReading,
+  choppedReading,
+  pulseResponse,
+  stepResponse,
+  type TimeModel,
+  timeModel,
+} from "./analysis/timeResponse.ts";
 export { type Drift, type Validation, validateMeasured } from "./analysis/validateMeasured.ts";
 export type { Verdict } from "./analysis/verdict.ts";
 export * from "./constants.ts";
