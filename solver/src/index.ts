@@ -29,6 +29,7 @@ export {
 } from "./fit/fit.ts";
 export type { Evaluator, FitData } from "./fit/fitProblem.ts";
 export type { Unresolved } from "./fit/identifiability.ts";
+export { type Profile, profileLikelihood } from "./fit/profile.ts";
 export * from "./result.ts";
 export * from "./scenario/device.ts";
 export * from "./scenario/errors.ts";

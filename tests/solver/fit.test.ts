@@ -2,6 +2,7 @@ import { describe, expect, test } from "vitest";
 import { type FitRequest, fitScenario } from "../../solver/src/fit/fit.ts";
 import type { FitData } from "../../solver/src/fit/fitProblem.ts";
 import { minimise } from "../../solver/src/fit/levenbergMarquardt.ts";
+import { profileLikelihood } from "../../solver/src/fit/profile.ts";
 import type { Technique } from "../../solver/src/scenario/schema.ts";
 import { diffusion, logarithmic, type Response, relaxation, sampled } from "./spectra.ts";
 
@@ -179,6 +180,21 @@ describe("fit", () => {
     const request = { scenarios: [film({ diffusionCm2PerS: 1e-3 })], data: [data("imps", uniformFilm, 0.01, 1)], free };
     expect(() => fitScenario(request)).toThrow(message);
   });
+});
+
+test("the profile likelihood of a well determined parameter ends where its 95 % interval does", patient, () => {
+  const request: FitRequest = {
+    scenarios: [film({ diffusionCm2PerS: 2e-3, absorptionPerCm: 1.1 })],
+    data: [data("imps", uniformFilm, 0.005, 1)],
+    free: [o("diffusionCm2PerS"), o("absorptionPerCm")],
+  };
+  const result = fitScenario(request);
+  const [{ value, interval95 }] = result.parameters;
+  const values = logarithmic(0.9 * value, 1.1 * value, 400);
+  const profile = profileLikelihood(request, result, o("diffusionCm2PerS"), values);
+  const width = interval95![1] - interval95![0];
+  expect(Math.abs(profile.interval95[0]! - interval95![0])).toBeLessThan(0.1 * width);
+  expect(Math.abs(profile.interval95[1]! - interval95![1])).toBeLessThan(0.1 * width);
 });
 
 test("Levenberg–Marquardt finds the minimum of Rosenbrock's valley, and the bound that cuts it off", () => {
