@@ -62,8 +62,7 @@ export interface Assembly {
   /** Rounding to expect in `current` and in `balance`. */
   currentNoise: number;
   balanceNoise: number;
-  /** Smallest sum of conductances of both carriers over the edges, and where. */
-  leastConductance: number;
+  /** Edge with the smallest sum of conductances of both carriers. */
   leastConductingEdge: number;
 }
 
@@ -97,7 +96,6 @@ export function createAssembly(matrix: BlockMatrix, forSmallSignal: boolean): As
     balanceByState: new Float64Array(nodes * blockSize),
     currentNoise: 0,
     balanceNoise: 0,
-    leastConductance: 0,
     leastConductingEdge: 0,
   };
 }
@@ -245,7 +243,6 @@ function addEdges(problem: Problem, state: State, target: Assembly): void {
     }
   }
   target.currentNoise = 1.1e-16 * noise;
-  target.leastConductance = least;
   target.leastConductingEdge = leastEdge;
 }
 

@@ -36,7 +36,7 @@ export interface SteadyOptions {
   start?: State;
 }
 
-export type SteadyStatus = "solved" | "notConverged" | "singular" | "budgetExhausted" | "aborted";
+type SteadyStatus = "solved" | "notConverged" | "singular" | "budgetExhausted" | "aborted";
 
 export interface SteadyState {
   status: SteadyStatus;
@@ -53,7 +53,7 @@ export interface SteadyState {
 
 const tolerance = 1e-8;
 const iterationsPerStep = 25;
-export const defaultIterations = 4000;
+const defaultIterations = 4000;
 
 /** Carries the counters and the best iterate through the stages. */
 class Walk {

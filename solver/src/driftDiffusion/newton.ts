@@ -222,8 +222,8 @@ export function newton(
   return { status: "notConverged", iterations: options.iterations, residual };
 }
 
-/** Steps (in kT) that may be rounding: 10⁻⁵ of a density. */
-const roundingStep = 1e-5;
+/** Steps (in kT) that may be rounding where Newton's method stands still: 10⁻⁴ of some density that is nearly undetermined. */
+const roundingStep = 1e-4;
 
 /** Apply a step, limited; returns its largest unlimited change of ln(density), φ̃ or v. */
 function takeStep(problem: Problem, state: State, step: Float64Array, voltageStep: number): number {

@@ -118,6 +118,7 @@ export class OperatingPoints {
     const operation = operationOf(bias);
     let { problem, state } = this.start(key, bias);
     let reached: { problem: Problem; steady: SteadyState } | null = null;
+    let iterations = 0;
     for (let refinement = 0; refinement <= refinements; refinement++) {
       const ions = this.ions(problem);
       const steady: SteadyState =
@@ -129,6 +130,7 @@ export class OperatingPoints {
               { flux: fluxToSI(fluxPerCm2S), heldIons: ions?.held ?? null },
               { ...this.options, start: state },
             );
+      iterations += steady.iterations;
       // A state that was reached on the first mesh stands where the finer mesh gives none.
       if (reached && steady.status !== "solved" && steady.status !== "aborted") break;
       reached = { problem, steady };
@@ -147,7 +149,7 @@ export class OperatingPoints {
       problem: reached!.problem,
       bias,
       fluxPerCm2S,
-      steady,
+      steady: { ...steady, iterations },
       voltage: operation.kind === "voltage" ? operation.voltage : inside,
       current: operation.kind === "openCircuit" ? 0 : steady.current - inside / circuit.shuntResistance,
     };
