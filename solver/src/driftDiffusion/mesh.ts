@@ -20,9 +20,9 @@ export interface Mesh {
   edgeLayer: Int32Array;
 }
 
-const growth = 0.07;
-const cellsAcrossLayer = 90;
-const fewestCells = 420;
+const growth = 0.06;
+const cellsAcrossLayer = 100;
+const fewestCells = 480;
 const mostCells = 2000;
 const fractionOfScreening = 0.02;
 

@@ -17,14 +17,14 @@ import { layerRates } from "./recombination.ts";
 import type { State } from "./state.ts";
 import { boltzmann } from "./statistics.ts";
 
-const wantedStep = 0.28;
-const acceptedStep = 0.4;
+const wantedStep = 0.19;
+const acceptedStep = 0.27;
 /** Error wanted of the recombination summed over depth, relative, and how far an edge may be from it. */
-const wantedError = 1e-4;
+const wantedError = 4e-5;
 const acceptedDivision = 1.5;
 const growth = 0.2;
 /** The refined mesh has at most this many times the nodes of the first one. */
-const growthOfNodes = 2;
+const growthOfNodes = 2.5;
 
 /** |Δφ̃| of each edge. */
 function potentialSteps(problem: Problem, state: State): Float64Array {
