@@ -182,6 +182,15 @@ describe("fit", () => {
   });
 });
 
+test("what the model refuses is refused, not fitted", () => {
+  const request: FitRequest = {
+    scenarios: [film({ diffusionCm2PerS: 2e-3 })],
+    data: [{ ...data("imvs", uniformFilm, 0.005, 1), bias: "shortCircuit" }],
+    free: ["light.frontReflectance"],
+  };
+  expect(() => fitScenario(request)).toThrow("short circuit");
+});
+
 test("the profile likelihood of a well determined parameter ends where its 95 % interval does", patient, () => {
   const request: FitRequest = {
     scenarios: [film({ diffusionCm2PerS: 2e-3, absorptionPerCm: 1.1 })],

@@ -126,15 +126,9 @@ export function buildProblem(
   const [solved] = free.some((path) => path.includes("model.overrides.")) ? evaluator.spectra(first) : [];
   const derived: Derived = solved?.status === "solved" ? (solved.derived ?? {}) : {};
   const parameters = freeParameters(first, free, bounds, derived);
-  // bounds that the model refuses anywhere are found during the fit; faults of the document itself are found here
-  for (const { document } of groups)
-    parseScenario(
-      withValues(
-        document,
-        parameters,
-        parameters.map(({ start }) => start),
-      ),
-    );
+  // what the model refuses at the start is a refused request; refused values on the way are only steps not taken
+  const starts = parameters.map(({ start }) => start);
+  for (const { document } of groups) evaluator.spectra(parseScenario(withValues(document, parameters, starts)));
 
   const place = (
     target: Float64Array,
