@@ -120,6 +120,16 @@ describe("measured data", () => {
     await page.getByText("99988 more rows, all read").waitFor();
   });
 
+  it("shows the preview on a phone without a sideways scroll", async () => {
+    const { page, labPath } = await visit({ role: "researcher", viewport: phone, colorScheme: "dark" });
+    await page.goto(`${labPath}/measurements/import`);
+    await hydrated(page);
+    await page.getByLabel("File", { exact: true }).setInputFiles(upload("phone.txt", instrumentFile()));
+    await page.getByRole("heading", { name: /First look/ }).waitFor();
+    await expectAccessible(page);
+    expect(await page.evaluate(() => document.documentElement.scrollWidth <= innerWidth)).toBe(true);
+  });
+
   it.each([
     ["desktop, dark", desktop, "dark"],
     ["phone, light", phone, "light"],

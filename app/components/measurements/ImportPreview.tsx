@@ -145,8 +145,8 @@ export function ImportPreview(props: ImportPreviewProps) {
         </div>
       )}
       {read && (
-        <div className="mt-3 grid gap-x-14 gap-y-6 lg:grid-cols-[minmax(0,720fr)_minmax(0,616fr)]">
-          <div className="grid min-w-0 content-start gap-5">
+        <div className="mt-3 grid grid-cols-[minmax(0,1fr)] gap-x-14 gap-y-6 lg:grid-cols-[minmax(0,720fr)_minmax(0,616fr)]">
+          <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-5">
             <FileTable reading={read} values={values} />
             <Understood findings={read.findings} values={values} faults={faults} needs={read.needs} />
             {!local && (
@@ -162,7 +162,7 @@ export function ImportPreview(props: ImportPreviewProps) {
             {!local && <KeptFields values={values} again={again} />}
             <Verdicts reading={read} />
           </div>
-          <div className="grid min-w-0 content-start gap-5">
+          <div className="grid min-w-0 grid-cols-[minmax(0,1fr)] content-start gap-5">
             {first && (
               <section aria-labelledby="look-heading">
                 <h2 id="look-heading" className="font-semibold">

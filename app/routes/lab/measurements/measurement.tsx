@@ -115,7 +115,7 @@ export default function MeasurementPage({ loaderData, actionData, params: { labI
       {importRecord.relative && (
         <p className="mt-1 text-ink-soft">The file gives no absolute scale: only the shape can be compared.</p>
       )}
-      <div className="mt-3 grid gap-x-14 gap-y-6 lg:grid-cols-[minmax(0,720fr)_minmax(0,616fr)]">
+      <div className="mt-3 grid grid-cols-[minmax(0,1fr)] gap-x-14 gap-y-6 lg:grid-cols-[minmax(0,720fr)_minmax(0,616fr)]">
         <section aria-label="Plots" className="min-w-0">
           <MeasuredPlots
             technique={measurement.technique}
