@@ -19,7 +19,9 @@ function instrumentFile(): string {
 const upload = (name: string, text: string) => ({ name, mimeType: "text/plain", buffer: Buffer.from(text) });
 
 describe("measured data", () => {
-  it("goes from a file with a decimal comma to an overlay, to a guest on a phone, until the link is revoked", async () => {
+  it("goes from a file with a decimal comma to an overlay, to a guest on a phone, until the link is revoked", {
+    timeout: 240_000,
+  }, async () => {
     const { page, labPath } = await visit({ role: "researcher", viewport: desktop });
     await page.goto(`${labPath}/measurements/import`);
     await hydrated(page);
