@@ -124,3 +124,6 @@ export function defaultOf(layerDocument: LayerDocument, field: NumberField): num
   if (field.quantity === "trapDepthEV") return layerDocument.gapEV / 2;
   return quantityOf(field).default;
 }
+
+/** Whether a number is left to its default, or says the same. */
+export const isUsual = (value: unknown, { default: usual }: Quantity): boolean => value === undefined || value === usual;

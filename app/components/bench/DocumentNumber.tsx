@@ -5,7 +5,7 @@ import type { StackProps } from "~/components/stack/stackProps";
 import { fieldAt, type Keys, withField } from "~/lib/documentNumbers";
 import { symbolNotation } from "~/lib/richText";
 
-interface DocumentNumberProps extends StackProps {
+export interface DocumentNumberProps extends StackProps {
   keys: Keys;
   quantity: QuantityName;
   /** Short name, notation of `richText.ts`; else the quantity's words and symbol. */

@@ -1,7 +1,13 @@
 import { memo } from "react";
 import { NumberGroup } from "~/components/stack/NumberGroup";
 import type { StackProps } from "~/components/stack/stackProps";
-import { DocumentNumber } from "./DocumentNumber";
+import { DocumentNumbers } from "./DocumentNumbers";
+
+const numbers = [
+  { keys: ["frequencies", "fromHz"], quantity: "fromHz", label: "from", context: "frequencies" },
+  { keys: ["frequencies", "toHz"], quantity: "toHz", label: "to", context: "frequencies" },
+  { keys: ["frequencies", "pointsPerDecade"], quantity: "pointsPerDecade", label: "points per decade" },
+] as const;
 
 /** The frequencies of all spectra, equally spaced on a logarithmic axis, or a list that came with the document. */
 export const FrequencyNumbers = memo(function FrequencyNumbers(props: StackProps) {
@@ -32,22 +38,5 @@ export const FrequencyNumbers = memo(function FrequencyNumbers(props: StackProps
         </p>
       </NumberGroup>
     );
-  return (
-    <NumberGroup title="Frequencies">
-      <DocumentNumber
-        {...props}
-        keys={["frequencies", "fromHz"]}
-        quantity="fromHz"
-        label="from"
-        context="frequencies"
-      />
-      <DocumentNumber {...props} keys={["frequencies", "toHz"]} quantity="toHz" label="to" context="frequencies" />
-      <DocumentNumber
-        {...props}
-        keys={["frequencies", "pointsPerDecade"]}
-        quantity="pointsPerDecade"
-        label="points per decade"
-      />
-    </NumberGroup>
-  );
+  return <DocumentNumbers {...props} title="Frequencies" numbers={numbers} />;
 });

@@ -1,18 +1,9 @@
-import {
-  type ModelKind,
-  modelKinds,
-  type Quantity,
-  type QuantityName,
-  quantities,
-  type ScenarioDocument,
-  type SpectrumResult,
-} from "@demilune/solver";
+import { type ModelKind, type Quantity, type QuantityName, quantities, type SpectrumResult } from "@demilune/solver";
 import { memo } from "react";
 import { ChoiceLine } from "~/components/fields/ChoiceField";
 import { NumberGroup } from "~/components/stack/NumberGroup";
 import type { StackProps } from "~/components/stack/stackProps";
 import { fieldAt, withField } from "~/lib/documentNumbers";
-import { modelNames } from "~/lib/spectrumNames";
 import { layerName } from "~/lib/stackEdits";
 import { DocumentNumber } from "./DocumentNumber";
 
@@ -68,20 +59,14 @@ const overrideWords: Record<ModelKind, readonly WordOverride[]> = {
   diffusionLayers: [carrier],
 };
 
-/** What can be changed when the model is: overrides belong to one model and are dropped with it. */
-function withModel(document: ScenarioDocument, kind: ModelKind): ScenarioDocument {
-  const absorber = document.model?.absorber;
-  return { ...document, model: absorber === undefined ? { kind } : { kind, absorber } };
-}
-
 interface ModelNumbersProps extends StackProps {
   /** Where the values come from that a model derived. */
   spectrum: SpectrumResult | undefined;
 }
 
-/** The model, the layer it takes its parameters from, and the values that replace derived ones. */
+/** The layer that a closed form takes its parameters from, the values that replace derived ones, the mesh. */
 export const ModelNumbers = memo(function ModelNumbers({ spectrum, ...props }: ModelNumbersProps) {
-  const { document, onChange } = props;
+  const { document, onChange, readOnly } = props;
   const kind = document.model?.kind ?? "driftDiffusion";
   const derived = spectrum?.status === "solved" ? spectrum.derived : undefined;
   const { layers } = document.stack;
@@ -89,17 +74,47 @@ export const ModelNumbers = memo(function ModelNumbers({ spectrum, ...props }: M
     { value: "most", label: "layer that absorbs most" },
     ...layers.map((layer, index) => ({ value: String(index), label: layerName(layer, index) })),
   ];
-  return (
-    <NumberGroup title="Model">
-      <ChoiceLine
-        label="model"
-        choices={modelKinds.toReversed().map((value) => ({ value, label: modelNames[value] }))}
-        value={kind}
-        onChange={(next) => onChange(withModel(document, next), { path: "model.kind", live: false })}
+  const rows = overrideNumbers[kind].map((name) => {
+    const used = derived?.[name];
+    const row: Quantity = quantities[name];
+    return {
+      key: name,
+      row: (
+        <DocumentNumber
+          {...props}
+          keys={["model", "overrides", name]}
+          quantity={name}
+          context="model"
+          fallback={typeof used === "number" ? used : null}
+          emptyMeans={(used === null && row.nullMeans) || "from the stack"}
+        />
+      ),
+    };
+  });
+  const mesh = {
+    key: "nodes",
+    usual: document.model?.nodes === undefined,
+    row: (
+      <DocumentNumber
+        {...props}
+        keys={["model", "nodes"]}
+        quantity="nodes"
+        label="mesh nodes"
+        fallback={null}
+        emptyMeans="the solver's choice"
       />
+    ),
+  };
+  const hasMesh = kind === "driftDiffusion" || kind === "diffusionLayers";
+  return (
+    <NumberGroup
+      title={kind === "driftDiffusion" ? "Mesh" : "Values of the model"}
+      rows={hasMesh ? [...rows, mesh] : rows}
+    >
       {kind !== "driftDiffusion" && kind !== "diffusionLayers" && (
         <ChoiceLine
           label="parameters of"
+          readOnly={readOnly}
           choices={absorbers}
           value={String(document.model?.absorber ?? "most")}
           onChange={(next) =>
@@ -119,6 +134,7 @@ export const ModelNumbers = memo(function ModelNumbers({ spectrum, ...props }: M
             key={name}
             label={label}
             context="model"
+            readOnly={readOnly}
             choices={[
               { value: "", label: usual },
               ...Object.entries(words).map(([value, word]) => ({ value, label: word })),
@@ -133,31 +149,6 @@ export const ModelNumbers = memo(function ModelNumbers({ spectrum, ...props }: M
           />
         );
       })}
-      {overrideNumbers[kind].map((name) => {
-        const used = derived?.[name];
-        const row: Quantity = quantities[name];
-        return (
-          <DocumentNumber
-            key={name}
-            {...props}
-            keys={["model", "overrides", name]}
-            quantity={name}
-            context="model"
-            fallback={typeof used === "number" ? used : null}
-            emptyMeans={(used === null && row.nullMeans) || "from the stack"}
-          />
-        );
-      })}
-      {(kind === "driftDiffusion" || kind === "diffusionLayers") && (
-        <DocumentNumber
-          {...props}
-          keys={["model", "nodes"]}
-          quantity="nodes"
-          label="mesh nodes"
-          fallback={null}
-          emptyMeans="the solver's choice"
-        />
-      )}
     </NumberGroup>
   );
 });

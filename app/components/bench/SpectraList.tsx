@@ -1,6 +1,6 @@
 import { type Bias, quantities, techniques } from "@demilune/solver";
-import { memo } from "react";
-import { ChoiceLine } from "~/components/fields/ChoiceField";
+import { memo, useState } from "react";
+import { LineSelect } from "~/components/fields/ChoiceField";
 import { QuantityLine } from "~/components/fields/QuantityLine";
 import { NumberGroup } from "~/components/stack/NumberGroup";
 import type { StackProps } from "~/components/stack/stackProps";
@@ -17,6 +17,7 @@ const biases = [
 export const SpectraList = memo(function SpectraList(props: StackProps) {
   const { document, onChange, readOnly } = props;
   const spectra = document.spectra ?? [];
+  const [fluxes, setFluxes] = useState(false);
   // The place in the list is what a row stands for: it has no other identity.
   const rows = spectra.map((spectrum, index) => ({ spectrum, index, id: `spectrum-${index}` }));
   const replace = (next: typeof spectra, path: string, live = false) =>
@@ -27,28 +28,42 @@ export const SpectraList = memo(function SpectraList(props: StackProps) {
         const bias: Bias = spectrum.bias ?? defaultBias(spectrum.technique);
         const context = `spectrum ${index + 1}`;
         return (
-          <div key={id} className="mb-1">
-            <ChoiceLine
-              label={`${index + 1}, technique`}
-              context={context}
-              choices={techniques.map((value) => ({ value, label: techniqueNames[value] }))}
-              value={spectrum.technique}
-              onChange={(technique) =>
-                replace(spectra.with(index, { ...spectrum, technique }), `spectra.${index}.technique`)
-              }
-            />
-            <ChoiceLine
-              label="at"
-              context={context}
-              choices={biases}
-              value={typeof bias === "object" ? "voltage" : bias}
-              onChange={(next) =>
-                replace(
-                  spectra.with(index, { ...spectrum, bias: next === "voltage" ? { voltageV: 0.5 } : next }),
-                  `spectra.${index}.bias`,
-                )
-              }
-            />
+          <div key={id}>
+            <div className="flex h-6 items-center gap-1.5 border-line border-b">
+              <span className="w-3 text-ink-soft">{index + 1}</span>
+              <LineSelect
+                label={`technique, ${context}`}
+                choices={techniques.map((value) => ({ value, label: techniqueNames[value] }))}
+                value={spectrum.technique}
+                readOnly={readOnly}
+                onChange={(technique) =>
+                  replace(spectra.with(index, { ...spectrum, technique }), `spectra.${index}.technique`)
+                }
+              />
+              <LineSelect
+                label={`operating point, ${context}`}
+                choices={biases}
+                value={typeof bias === "object" ? "voltage" : bias}
+                readOnly={readOnly}
+                onChange={(next) =>
+                  replace(
+                    spectra.with(index, { ...spectrum, bias: next === "voltage" ? { voltageV: 0.5 } : next }),
+                    `spectra.${index}.bias`,
+                  )
+                }
+              />
+              {!readOnly && spectra.length > 1 && (
+                <button
+                  type="button"
+                  className="action ml-auto w-6 justify-center"
+                  aria-label={`Take out spectrum ${index + 1}`}
+                  title="Take out"
+                  onClick={() => replace(spectra.toSpliced(index, 1), "take out a spectrum")}
+                >
+                  ×
+                </button>
+              )}
+            </div>
             {typeof bias === "object" && (
               <QuantityLine
                 quantity={quantities.voltageV}
@@ -66,36 +81,33 @@ export const SpectraList = memo(function SpectraList(props: StackProps) {
                 }
               />
             )}
-            <DocumentNumber
-              {...props}
-              keys={["spectra", index, "fluxPerCm2S"]}
-              quantity="fluxPerCm2S"
-              label="flux of its own *Φ*"
-              context={context}
-              fallback={document.light.fluxPerCm2S}
-              emptyMeans="as the light"
-            />
-            {!readOnly && spectra.length > 1 && (
-              <button
-                type="button"
-                className="action text-small"
-                aria-label={`Take out spectrum ${index + 1}`}
-                onClick={() => replace(spectra.toSpliced(index, 1), "take out a spectrum")}
-              >
-                Take out
-              </button>
+            {(fluxes || spectrum.fluxPerCm2S !== undefined) && (
+              <DocumentNumber
+                {...props}
+                keys={["spectra", index, "fluxPerCm2S"]}
+                quantity="fluxPerCm2S"
+                label="flux of its own *Φ*"
+                context={context}
+                fallback={document.light.fluxPerCm2S}
+                emptyMeans="as the light"
+              />
             )}
           </div>
         );
       })}
       {!readOnly && (
-        <button
-          type="button"
-          className="action text-small"
-          onClick={() => replace([...spectra, { technique: "imps", bias: "shortCircuit" }], "add a spectrum")}
-        >
-          Add a spectrum
-        </button>
+        <div className="flex flex-wrap justify-between gap-x-4">
+          <button
+            type="button"
+            className="action text-small"
+            onClick={() => replace([...spectra, { technique: "imps", bias: "shortCircuit" }], "add a spectrum")}
+          >
+            Add a spectrum
+          </button>
+          <button type="button" className="action text-small" aria-expanded={fluxes} onClick={() => setFluxes(!fluxes)}>
+            {fluxes ? "Hide fluxes of their own" : "Fluxes of their own"}
+          </button>
+        </div>
       )}
     </NumberGroup>
   );

@@ -44,36 +44,52 @@ export function ChoiceField<Value extends string>({
   );
 }
 
-interface ChoiceLineProps<Value extends string> {
-  label: string;
-  /** What the choice belongs to, for its spoken name. */
-  context?: string;
+interface LineSelectProps<Value extends string> {
+  id?: string;
+  /** Spoken name where no label is tied to it. */
+  label?: string;
   choices: readonly Choice<Value>[];
   value: Value;
   onChange: (value: Value) => void;
+  readOnly?: boolean;
 }
 
-/** One of several words on the 24 px line of a number list. */
-export function ChoiceLine<Value extends string>({ label, context, choices, value, onChange }: ChoiceLineProps<Value>) {
+/** One of several words, without a frame, on a line of a number list. */
+export function LineSelect<Value extends string>(props: LineSelectProps<Value>) {
+  const { id, label, choices, value, onChange, readOnly } = props;
+  return (
+    <select
+      id={id}
+      aria-label={label}
+      value={value}
+      disabled={readOnly}
+      onChange={(event) => onChange(event.currentTarget.value as Value)}
+      className="h-6 min-w-0 rounded-[2px] bg-transparent text-right"
+    >
+      {choices.map((choice) => (
+        <option key={choice.value} value={choice.value} className="bg-sheet text-ink">
+          {choice.label}
+        </option>
+      ))}
+    </select>
+  );
+}
+
+interface ChoiceLineProps<Value extends string> extends Omit<LineSelectProps<Value>, "id"> {
+  label: string;
+  /** What the choice belongs to, for its spoken name. */
+  context?: string;
+}
+
+/** One of several words with its name, on the 24 px line of a number list. */
+export function ChoiceLine<Value extends string>({ label, context, ...select }: ChoiceLineProps<Value>) {
   const id = useId();
   return (
     <div className="flex h-6 items-center justify-between gap-2 border-b border-line">
       <label htmlFor={id} className="truncate text-ink-soft">
         {label}
       </label>
-      <select
-        id={id}
-        aria-label={context ? `${label}, ${context}` : undefined}
-        value={value}
-        onChange={(event) => onChange(event.currentTarget.value as Value)}
-        className="h-6 min-w-0 rounded-[2px] bg-transparent text-right"
-      >
-        {choices.map((choice) => (
-          <option key={choice.value} value={choice.value} className="bg-sheet">
-            {choice.label}
-          </option>
-        ))}
-      </select>
+      <LineSelect {...select} id={id} label={context && `${label}, ${context}`} />
     </div>
   );
 }

@@ -22,13 +22,15 @@ export interface FluxFieldProps {
   /** A wavelength is handed over where it was typed behind the value ("1 mW/cm² @ 635 nm"). */
   onChange: (fluxPerCm2S: number, step: ChangeStep, wavelengthNm?: number) => void;
   label?: string;
+  readOnly?: boolean;
 }
 
 /**
  * The photon flux on a line of the bench's number lists, typed as photons, as mW/cm² with a wavelength, or as the
  * mA/cm² it could at most drive. Changing the unit converts the number and never reads it anew.
  */
-export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *Φ*" }: FluxFieldProps) {
+export function FluxField(props: FluxFieldProps) {
+  const { fluxPerCm2S, wavelengthNm, onChange, label = "flux *Φ*", readOnly } = props;
   const id = useId();
   const [chosen, setForm] = useState<FluxForm>("photons");
   const form = chosen === "power" && wavelengthNm === undefined ? "photons" : chosen;
@@ -36,11 +38,20 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
   const [checked, setChecked] = useState(false);
   const shownNumber = Number(fluxTo(fluxPerCm2S, form, wavelengthNm ?? 1).toPrecision(6));
   const reading = text === null ? null : readFlux(text, form, wavelengthNm ?? null);
-  const drag = useSidewaysDrag({ quantity: quantities.fluxPerCm2S, value: fluxPerCm2S, onMove: change });
+  const drag = useSidewaysDrag({
+    quantity: quantities.fluxPerCm2S,
+    value: readOnly ? null : fluxPerCm2S,
+    onMove: change,
+  });
   const needsWavelength = chosen === "power" && form !== "power";
   const error = checked && reading && !reading.ok ? reading.error : null;
   const message =
-    error ?? (needsWavelength ? "mW/cm² needs a wavelength: fill it in below" : reading?.ok ? reading.note : null);
+    error ??
+    (needsWavelength
+      ? "mW/cm² needs a wavelength: type it behind the number, as in 1 mW/cm² @ 635 nm, or fill it in below"
+      : reading?.ok
+        ? reading.note
+        : null);
 
   function change(next: number, live: boolean) {
     setText(null);
@@ -76,7 +87,11 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
   return (
     <div>
       <div className="grid h-6 grid-cols-[minmax(0,max-content)_minmax(4.5rem,1fr)_84px] border-b border-line leading-[22px]">
-        <label htmlFor={id} className="cursor-ew-resize truncate text-lamp select-none touch-pan-y" {...drag}>
+        <label
+          htmlFor={id}
+          className={`truncate text-lamp select-none touch-pan-y ${readOnly ? "" : "cursor-ew-resize"}`}
+          {...drag}
+        >
           <RichText text={label} />
         </label>
         <div className="relative">
@@ -89,6 +104,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
             aria-valuetext={`${formatNumber(shownNumber)} ${fluxUnits[form]}`}
             aria-invalid={error !== null}
             aria-describedby={message === null ? undefined : `${id}-message`}
+            readOnly={readOnly}
             autoComplete="off"
             autoCapitalize="off"
             spellCheck={false}
@@ -98,7 +114,7 @@ export function FluxField({ fluxPerCm2S, wavelengthNm, onChange, label = "flux *
               setChecked(false);
             }}
             onBlur={commit}
-            onKeyDown={onKeyDown}
+            onKeyDown={readOnly ? undefined : onKeyDown}
             onFocus={(event) => event.currentTarget.select()}
             className={`peer absolute right-0 h-6 w-full rounded-[2px] bg-transparent px-1 text-right tabular-nums focus:z-20 focus:w-40 focus:bg-sheet focus:text-ink focus:outline-2 focus:outline-tide ${
               text === null ? "text-transparent" : "text-ink"

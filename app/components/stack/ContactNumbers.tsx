@@ -28,6 +28,7 @@ export function ContactNumbers({ document, side, onChange, readOnly }: ContactNu
       <ChoiceLine
         label="takes"
         context={`${side} contact`}
+        readOnly={readOnly}
         choices={[
           { value: "electrons", label: "electrons, −" },
           { value: "holes", label: "holes, +" },
@@ -45,6 +46,7 @@ export function ContactNumbers({ document, side, onChange, readOnly }: ContactNu
       <ChoiceLine
         label="kind"
         context={`${side} contact`}
+        readOnly={readOnly}
         choices={[
           { value: "ohmic", label: "ohmic" },
           { value: "workFunction", label: "work function" },

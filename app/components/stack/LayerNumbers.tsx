@@ -2,7 +2,7 @@ import { useState } from "react";
 import { ChoiceLine } from "~/components/fields/ChoiceField";
 import { QuantityLine } from "~/components/fields/QuantityLine";
 import { layerName, replaceLayer, setLayerNumber } from "~/lib/stackEdits";
-import { defaultOf, type LayerField, layerFields, layerGroups, numberAt, quantityOf } from "~/lib/stackFields";
+import { defaultOf, isUsual, type LayerField, layerFields, layerGroups, numberAt, quantityOf } from "~/lib/stackFields";
 import { NumberGroup } from "./NumberGroup";
 import type { StackProps } from "./stackProps";
 
@@ -45,32 +45,39 @@ export function LayerNumbers({ document, index, onChange, readOnly, held }: Laye
         />
       </div>
       {layerGroups.map((group) => (
-        <NumberGroup key={group} title={group}>
-          {layerFields
+        <NumberGroup
+          key={group}
+          title={group}
+          rows={layerFields
             .filter((field) => field.group === group)
-            .map((field) => (
-              <QuantityLine
-                key={field.path.join(".")}
-                quantity={quantityOf(field)}
-                label={field.label}
-                context={name}
-                value={numberAt(layer, field)}
-                fallback={defaultOf(layer, field)}
-                emptyMeans={field.emptyMeans}
-                held={held?.[pathOf(field)]}
-                error={refusal?.path === pathOf(field) ? refusal.text : undefined}
-                readOnly={readOnly}
-                onChange={(value, step) => {
-                  const edit = setLayerNumber(document, index, field, value);
-                  if ("refused" in edit) return setRefusal({ path: pathOf(field), text: edit.refused });
-                  setRefusal(null);
-                  onChange(edit.document, { ...step, path: pathOf(field), notes: edit.notes });
-                }}
-              />
-            ))}
+            .map((field) => ({
+              key: field.path.join("."),
+              usual: isUsual(numberAt(layer, field), quantityOf(field)) && !field.required,
+              row: (
+                <QuantityLine
+                  quantity={quantityOf(field)}
+                  label={field.label}
+                  context={name}
+                  value={numberAt(layer, field)}
+                  fallback={defaultOf(layer, field)}
+                  emptyMeans={field.emptyMeans}
+                  held={held?.[pathOf(field)]}
+                  error={refusal?.path === pathOf(field) ? refusal.text : undefined}
+                  readOnly={readOnly}
+                  onChange={(value, step) => {
+                    const edit = setLayerNumber(document, index, field, value);
+                    if ("refused" in edit) return setRefusal({ path: pathOf(field), text: edit.refused });
+                    setRefusal(null);
+                    onChange(edit.document, { ...step, path: pathOf(field), notes: edit.notes });
+                  }}
+                />
+              ),
+            }))}
+        >
           {group === "Recombination and traps" && layer.traps && (
             <ChoiceLine
               label="kind of trap"
+              readOnly={readOnly}
               context={name}
               choices={[
                 { value: "acceptor", label: "acceptor" },
