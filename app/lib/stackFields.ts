@@ -126,4 +126,5 @@ export function defaultOf(layerDocument: LayerDocument, field: NumberField): num
 }
 
 /** Whether a number is left to its default, or says the same. */
-export const isUsual = (value: unknown, { default: usual }: Quantity): boolean => value === undefined || value === usual;
+export const isUsual = (value: unknown, { default: usual }: Quantity): boolean =>
+  value === undefined || value === usual;

@@ -1,5 +1,6 @@
 /** Slower questions about a scenario, in a worker of their own, so that the spectra never wait for them. */
 import {
+  arcsOf,
   currentVoltageCurve,
   type Failure,
   type Fault,
@@ -29,6 +30,10 @@ function solved<Value extends { status: string }>(value: Value | { status: "fail
 }
 
 function answerTo(question: DetailQuestion): Details[DetailName]["answer"] {
+  if (question.name === "arcs") {
+    const { arcs, noise, approximation } = arcsOf(question.curve);
+    return { arcs, noise, valleysHz: approximation.valleysHz };
+  }
   const scenario = parseScenario(question.document);
   switch (question.name) {
     case "currentVoltage": {

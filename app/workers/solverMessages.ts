@@ -1,7 +1,9 @@
 /** What the page and its workers say to each other. */
 import type {
+  Arc,
   Bias,
   CurrentVoltageCurve,
+  Curve,
   Fault,
   HarmonicProfiles,
   Profiles,
@@ -30,6 +32,14 @@ export type SolveAnswer = NumberedAnswer & { milliseconds: number } & (
     | Refusal
   );
 
+export interface ArcsOfCurve {
+  arcs: Arc[];
+  /** Frequencies between neighbouring arcs: one fewer than arcs, Hz. */
+  valleysHz: number[];
+  /** Standard deviation of Re and of Im, unit of the spectrum. */
+  noise: number;
+}
+
 interface At {
   bias: Bias;
   fluxPerCm2S: number;
@@ -41,6 +51,8 @@ export interface Details {
   currentVoltage: { ask: object; answer: { light: CurrentVoltageCurve; dark: CurrentVoltageCurve } };
   profiles: { ask: At; answer: Profiles };
   harmonicProfiles: { ask: At & { technique: Technique; frequencyHz: number }; answer: HarmonicProfiles };
+  /** Of a curve whatever it comes from: needs no document. */
+  arcs: { ask: { curve: Curve }; answer: ArcsOfCurve };
   /** One spectrum of the document by another model. */
   otherModel: { ask: { shown: number; model: unknown }; answer: SpectrumResult };
 }

@@ -18,11 +18,12 @@ const startWorker = () => new Worker(new URL("./detail.worker.ts", import.meta.u
 /**
  * Ask the solver something that takes longer than a spectrum.
  *
+ * @param document what the question is about; null where it stands for itself
  * @param ask what is asked besides the document; keep it the same object while it means the same; null asks nothing for now
  */
 export function useDetail<Name extends DetailName>(
   name: Name,
-  document: ScenarioDocument,
+  document: ScenarioDocument | null,
   ask: Details[Name]["ask"] | null,
 ): Detail<Name> {
   const [detail, setDetail] = useState<Detail<Name>>({ value: null, busy: ask !== null, faults: [] });
@@ -48,7 +49,7 @@ export function useDetail<Name extends DetailName>(
 
   useEffect(() => {
     if (ask === null) return;
-    setDetail((previous) => ({ ...previous, busy: true }));
+    setDetail((previous) => (previous.busy ? previous : { ...previous, busy: true }));
     const timer = setTimeout(() => client.current?.ask({ name, document, ...ask } as DetailQuestion), quiet);
     return () => clearTimeout(timer);
   }, [name, document, ask]);

@@ -6,13 +6,14 @@ import type { Picked } from "~/components/stack/stackProps";
 import { RichText } from "~/components/ui/RichText";
 import { formatNumber, formatQuantity, thinSpace } from "~/lib/numberFormat";
 import { spectrumFor, withMeasuredFrequencies } from "~/lib/overlay";
-import { modelNames, spectrumNames } from "~/lib/spectrumNames";
+import { spectrumNames } from "~/lib/spectrumNames";
 import { useSolver } from "~/workers/useSolver";
 import { CircuitNumbers } from "./CircuitNumbers";
 import { FrequencyNumbers } from "./FrequencyNumbers";
 import { heldNumbers } from "./heldNumbers";
 import { LightNumbers } from "./LightNumbers";
 import { Faults, NotSolved } from "./Messages";
+import { ModelChoice } from "./ModelChoice";
 import { ModelNumbers } from "./ModelNumbers";
 import { PhoneSheet } from "./PhoneSheet";
 import { PickedNumbers } from "./PickedNumbers";
@@ -24,6 +25,7 @@ import { usualPaths } from "./sliders";
 import { type HeldCurve, type Measurement, seriesOf } from "./spectrumSeries";
 import { Tabs } from "./Tabs";
 import { useAddressChoice } from "./useAddressChoice";
+import { useArcs } from "./useArcs";
 import type { BenchDocument } from "./useBenchDocument";
 
 export interface BenchProps {
@@ -43,7 +45,7 @@ export interface BenchProps {
   exposed?: readonly string[];
   /** Buttons of the phone's sheet besides holding a curve. */
   sheetActions?: ReactNode;
-  /** Under the cross-section, before light and circuit, such as measurements to lay over. */
+  /** Below the number lists, such as measurements to lay over. */
   besideBelow?: ReactNode;
 }
 
@@ -105,6 +107,7 @@ export function Bench(props: BenchProps) {
     [document, measurements, shown],
   );
   const series = useMemo(() => seriesOf(spectrum, held, over), [spectrum, held, over]);
+  const arcs = useArcs(series);
   const heldValues = useMemo(() => (held ? heldNumbers(held.document, document) : undefined), [held, document]);
   const numbers = { document, onChange: change, readOnly: exposed !== undefined };
   const kind = document.model?.kind ?? "driftDiffusion";
@@ -139,7 +142,7 @@ export function Bench(props: BenchProps) {
           {props.name}
         </h1>
         <span className="text-ink-soft">{props.status}</span>
-        <span className="text-ink-soft max-lg:hidden">{modelNames[kind]}</span>
+        <ModelChoice {...numbers} />
         <div className="not-printed ml-auto flex flex-wrap items-center gap-x-5 max-md:hidden">
           <button type="button" className="action" disabled={!bench.canUndo} onClick={bench.undo}>
             Undo
@@ -181,6 +184,7 @@ export function Bench(props: BenchProps) {
               <SpectraView
                 spectrum={spectrum}
                 series={series}
+                arcs={arcs.onPlots}
                 linked={linked}
                 dragging={bench.dragging}
                 readout={readout}
@@ -196,6 +200,8 @@ export function Bench(props: BenchProps) {
             spectrum={spectrum}
             shown={shown}
             names={names}
+            series={series}
+            arcs={arcs}
             linked={linked}
             waiting={bench.dragging || solved.busy}
           />
@@ -216,12 +222,12 @@ export function Bench(props: BenchProps) {
             <div className="min-w-0">{picked && <PickedNumbers {...numbers} picked={picked} held={heldValues} />}</div>
           </div>
           <div className="mt-4 grid gap-x-8 md:max-lg:grid-cols-2">
-            {props.besideBelow}
             <LightNumbers {...numbers} />
             <CircuitNumbers {...numbers} />
             <ModelNumbers {...numbers} spectrum={kind === "driftDiffusion" ? undefined : spectrum} />
             <SpectraList {...numbers} readOnly={numbers.readOnly || fixedStructure} />
             <FrequencyNumbers {...numbers} />
+            {props.besideBelow}
           </div>
         </aside>
       </div>

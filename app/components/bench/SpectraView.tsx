@@ -1,10 +1,12 @@
 import type { SpectrumResult } from "@demilune/solver";
 import { memo, type ReactNode, useMemo, useState } from "react";
+import type { ArcsOfSeries } from "~/components/charts/ArcMarks";
 import { ComplexPlane } from "~/components/charts/ComplexPlane";
 import { OverFrequency } from "~/components/charts/OverFrequency";
 import { residualsOf } from "~/components/charts/residuals";
 import type { SpectrumSeries } from "~/components/charts/spectrum";
 import type { LinkedCursor } from "~/components/charts/useLinkedCursor";
+import { extent } from "~/components/charts/view";
 import { XYPlot } from "~/components/charts/XYPlot";
 import { useMediaQuery } from "~/components/ui/useMediaQuery";
 import { withLimit } from "~/lib/overlay";
@@ -15,6 +17,7 @@ import { useAddressChoice } from "./useAddressChoice";
 interface SpectraViewProps {
   spectrum: SpectrumResult;
   series: readonly SpectrumSeries[];
+  arcs: ArcsOfSeries | undefined;
   linked: LinkedCursor;
   dragging: boolean;
   /** On a phone the readout stands between the plots. */
@@ -73,6 +76,7 @@ export const SpectraView = memo(function SpectraView(props: SpectraViewProps) {
         key={`plane ${technique}`}
         title={`${name}, complex plane`}
         imUp={imUp}
+        arcs={props.arcs}
         decades
         height={phone ? 250 : 414}
         initialWidth={632}
@@ -102,6 +106,7 @@ export const SpectraView = memo(function SpectraView(props: SpectraViewProps) {
             key={`upper ${technique} ${upper}`}
             title={`${name}, ${partWords[upper]}`}
             part={upper}
+            arcs={props.arcs}
             xLabelsHidden={stacked}
             height={phone ? 170 : stacked ? 184 : 220}
             initialWidth={344}
@@ -125,6 +130,7 @@ export const SpectraView = memo(function SpectraView(props: SpectraViewProps) {
             key={`lower ${technique} ${lower}`}
             title={`${name}, ${partWords[lower]}`}
             part={lower}
+            arcs={props.arcs}
             height={phone ? 170 : stacked ? 230 : 220}
             initialWidth={344}
             tools={other}
@@ -135,6 +141,12 @@ export const SpectraView = memo(function SpectraView(props: SpectraViewProps) {
             title={`${name}, residuals: prediction − measured`}
             series={residuals}
             xAxis={{ label: "*f*", unit: "Hz", scale: "log" }}
+            xRange={
+              extent(
+                series.map(({ frequencyHz }) => frequencyHz),
+                "log",
+              ) ?? undefined
+            }
             yAxis={{ label: `residual, % of |${symbol}|`, unit: "1", scale: "linear" }}
             height={140}
             initialWidth={344}

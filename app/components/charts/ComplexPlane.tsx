@@ -21,6 +21,7 @@ interface ComplexPlaneProps
     | "onCursor"
     | "dragging"
     | "tools"
+    | "arcs"
     | "below"
     | "above"
   > {

@@ -17,6 +17,7 @@ interface OverFrequencyProps
     | "onCursor"
     | "dragging"
     | "tools"
+    | "arcs"
     | "below"
     | "above"
   > {

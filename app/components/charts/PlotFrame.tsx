@@ -1,5 +1,6 @@
 import { Group } from "@visx/group";
 import { type ReactNode, useEffect, useId, useRef, useState } from "react";
+import { ArcMarks, type ArcsOfSeries, ArcWash } from "./ArcMarks";
 import { Axes } from "./Axes";
 import { CursorMarks } from "./CursorMarks";
 import { Curves } from "./Curves";
@@ -59,9 +60,11 @@ export interface PlotFrameProps {
   dragging?: boolean;
   /** Further buttons beside zoom, table and files. */
   tools?: ReactNode;
+  /** Arcs of one of the series: marks at their peaks, a wash under the lit one. */
+  arcs?: ArcsOfSeries;
   /** Beneath the curves: washes, bands. */
   below?: (geometry: Geometry) => ReactNode;
-  /** Above the curves: numbered arcs, labels. */
+  /** Above the curves: labels. */
   above?: (geometry: Geometry) => ReactNode;
 }
 
@@ -69,7 +72,7 @@ const margin = { top: 22, right: 6, bottom: 40, left: 44 } as const;
 
 /** A plot with everything every plot has: axes, legend, cursor, keyboard reading, zoom, table, files, summary. */
 export function PlotFrame(props: PlotFrameProps) {
-  const { title, xAxis, yAxis, series, columns, height, legend = "left", cursor, onCursor } = props;
+  const { title, xAxis, yAxis, series, columns, height, legend = "left", cursor, onCursor, arcs } = props;
   const [box, width] = useWidth<HTMLDivElement>(props.initialWidth ?? 560);
   const plot = useRef<SVGSVGElement>(null);
   const id = useId();
@@ -101,6 +104,7 @@ export function PlotFrame(props: PlotFrameProps) {
   }, [drawn]);
 
   const read = series.find((one) => one.id === cursor?.seriesId);
+  const arched = arcs && series.find(({ id }) => id === arcs.seriesId);
   const readIndex = read && cursor ? nearestIndex(placesOf(read), cursor.at) : -1;
 
   const zoom = (factor: number | null) => {
@@ -186,6 +190,13 @@ export function PlotFrame(props: PlotFrameProps) {
                 </clipPath>
                 <g clipPath={`url(#${id}-frame)`}>
                   {props.below?.(geometry)}
+                  {arched && (
+                    <ArcWash
+                      series={arched}
+                      geometry={geometry}
+                      arcs={arcs.arcs.filter(({ number }) => number === arcs.lit)}
+                    />
+                  )}
                   {yAxis.scale === "linear" && view.y[0] < 0 && view.y[1] > 0 && (
                     <path d={`M0,${geometry.y(0)}h${frame.width}`} stroke="var(--rule)" opacity={0.6} />
                   )}
@@ -206,6 +217,7 @@ export function PlotFrame(props: PlotFrameProps) {
                   />
                   {props.above?.(geometry)}
                 </g>
+                {arched && <ArcMarks series={arched} geometry={geometry} arcs={arcs.arcs} stale={arcs.stale} />}
                 {legend !== "none" && <Legend series={series} x={legend === "left" ? 18 : frame.width - 150} y={22} />}
                 {read && readIndex >= 0 && (
                   <CursorMarks series={read} index={readIndex} geometry={geometry} dropLines={!props.monotone} />

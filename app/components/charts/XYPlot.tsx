@@ -18,6 +18,7 @@ interface XYPlotProps
     | "onCursor"
     | "dragging"
     | "tools"
+    | "arcs"
     | "below"
     | "above"
   > {

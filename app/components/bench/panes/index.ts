@@ -1,4 +1,5 @@
 /** The panes of the strip, in their order. A new pane is a component and a row here. */
+import { Arcs } from "./Arcs";
 import { Checks } from "./Checks";
 import { CurrentVoltage } from "./CurrentVoltage";
 import { DerivedNumbers } from "./DerivedNumbers";
@@ -11,6 +12,7 @@ import type { Pane, PaneContext } from "./pane";
 const isFullModel = ({ document }: PaneContext) => (document.model?.kind ?? "driftDiffusion") === "driftDiffusion";
 
 export const panes: readonly Pane[] = [
+  { id: "arcs", label: "Arcs", Content: Arcs },
   { id: "point", label: "Operating point", Content: OperatingPoint },
   { id: "current", label: "Current and voltage", available: isFullModel, Content: CurrentVoltage },
   { id: "profiles", label: "Profiles", available: isFullModel, Content: ProfilesOverDepth },

@@ -1,7 +1,9 @@
 /** What a pane of the strip under the spectra is given, and what it has to be. */
 import type { ResultDocument, ScenarioDocument, SpectrumResult } from "@demilune/solver";
 import type { ReactNode } from "react";
+import type { SpectrumSeries } from "~/components/charts/spectrum";
 import type { LinkedCursor } from "~/components/charts/useLinkedCursor";
+import type { Arcs } from "../useArcs";
 
 export interface PaneContext {
   document: ScenarioDocument;
@@ -13,6 +15,9 @@ export interface PaneContext {
   shown: number;
   /** Names of the document's spectra. */
   names: readonly string[];
+  /** What the plots draw of it. */
+  series: readonly SpectrumSeries[];
+  arcs: Arcs;
   linked: LinkedCursor;
   /** A value is being dragged or the spectra are being solved: slower questions wait. */
   waiting: boolean;
