@@ -4,7 +4,7 @@ import { setTimeout as sleep } from "node:timers/promises";
 import type { RequestHandler } from "express";
 import type { ServerBuild } from "react-router";
 import { closeDatabase, prepareDatabase } from "~/models/database.server";
-import { announceStop } from "~/services/lifetime.server";
+import { announceStop, stopping } from "~/services/lifetime.server";
 import { log } from "~/services/log.server";
 import { finishMails } from "~/services/mail/mail.server";
 import { SettingsError, settings } from "~/services/settings.server";
@@ -38,6 +38,10 @@ async function start(build: ServerBuild | (() => Promise<ServerBuild>), before?:
   server.headersTimeout = 66_000;
   server.requestTimeout = 120_000;
   await listen(server, current.port, current.host);
+  if (current.demo) {
+    const { keepFirstRun } = await import("../../drizzle/seed");
+    keepFirstRun(stopping).catch((error: unknown) => log.warn({ event: "firstRunNotKept", error: String(error) }));
+  }
   log.info({
     event: "started",
     origin: current.origin,

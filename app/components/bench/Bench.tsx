@@ -1,9 +1,11 @@
 import type { ResultDocument, ScenarioDocument, SpectrumResult } from "@demilune/solver";
-import { memo, type ReactNode, useMemo, useState } from "react";
+import { memo, type ReactNode, useMemo, useRef, useState } from "react";
 import { useLinkedCursor } from "~/components/charts/useLinkedCursor";
 import { CrossSection } from "~/components/stack/CrossSection";
 import type { Picked } from "~/components/stack/stackProps";
+import { Menu } from "~/components/ui/menu";
 import { RichText } from "~/components/ui/RichText";
+import { useMediaQuery } from "~/components/ui/useMediaQuery";
 import { formatNumber, formatQuantity, thinSpace } from "~/lib/numberFormat";
 import { spectrumFor, withMeasuredFrequencies } from "~/lib/overlay";
 import { spectrumNames } from "~/lib/spectrumNames";
@@ -11,6 +13,7 @@ import { useSolver } from "~/workers/useSolver";
 import { CircuitNumbers } from "./CircuitNumbers";
 import { FrequencyNumbers } from "./FrequencyNumbers";
 import { heldNumbers } from "./heldNumbers";
+import { KeyboardHelp } from "./KeyboardHelp";
 import { LightNumbers } from "./LightNumbers";
 import { Faults, NotSolved } from "./Messages";
 import { ModelChoice } from "./ModelChoice";
@@ -37,13 +40,15 @@ export interface BenchProps {
   measurements?: readonly Measurement[];
   /** Behind the name: revision and draft, in words. */
   status?: ReactNode;
-  /** Links and buttons at the right of the title line; at most one is filled. */
+  /** Links and buttons at the right of the title line; in a menu where there is no room. */
   actions?: ReactNode;
+  /** The one filled button of the page. */
+  filledAction?: ReactNode;
   /** Layers cannot be added, moved or deleted, spectra not added; numbers still move. */
   fixedStructure?: boolean;
   /** Paths of the numbers that may be moved; absent: all. */
   exposed?: readonly string[];
-  /** Buttons of the phone's sheet besides holding a curve. */
+  /** Buttons of the phone's sheet besides holding a curve; undo where absent. */
   sheetActions?: ReactNode;
   /** Below the number lists, such as measurements to lay over. */
   besideBelow?: ReactNode;
@@ -110,7 +115,7 @@ export function Bench(props: BenchProps) {
   const arcs = useArcs(series);
   const heldValues = useMemo(() => (held ? heldNumbers(held.document, document) : undefined), [held, document]);
   const numbers = { document, onChange: change, readOnly: exposed !== undefined };
-  const kind = document.model?.kind ?? "driftDiffusion";
+  const full = (document.model?.kind ?? "driftDiffusion") === "driftDiffusion";
 
   const readout = useMemo(
     () =>
@@ -135,6 +140,24 @@ export function Bench(props: BenchProps) {
     </button>
   );
 
+  const keys = useRef<HTMLDialogElement>(null);
+  const wide = useMediaQuery("(min-width: 80rem)");
+  const folded = (
+    <>
+      <button type="button" className="action" disabled={!bench.canUndo} onClick={bench.undo}>
+        Undo
+      </button>
+      <button type="button" className="action" disabled={!bench.canRedo} onClick={bench.redo}>
+        Redo
+      </button>
+      {holding}
+      {props.actions}
+      <button type="button" className="action" onClick={() => keys.current?.showModal()}>
+        Keys
+      </button>
+    </>
+  );
+
   return (
     <div className="bench" data-busy={solved.busy} data-milliseconds={solved.milliseconds ?? undefined}>
       <div className="flex flex-wrap items-baseline gap-x-4 gap-y-1">
@@ -143,15 +166,9 @@ export function Bench(props: BenchProps) {
         </h1>
         <span className="text-ink-soft">{props.status}</span>
         <ModelChoice {...numbers} />
-        <div className="not-printed ml-auto flex flex-wrap items-center gap-x-5 max-md:hidden">
-          <button type="button" className="action" disabled={!bench.canUndo} onClick={bench.undo}>
-            Undo
-          </button>
-          <button type="button" className="action" disabled={!bench.canRedo} onClick={bench.redo}>
-            Redo
-          </button>
-          {holding}
-          {props.actions}
+        <div className="not-printed ml-auto flex items-center gap-x-5">
+          {wide ? folded : <Menu label="Actions">{folded}</Menu>}
+          {props.filledAction}
         </div>
       </div>
       <p role="status" className="sr-only">
@@ -224,24 +241,27 @@ export function Bench(props: BenchProps) {
           <div className="mt-4 grid gap-x-8 md:max-lg:grid-cols-2">
             <LightNumbers {...numbers} />
             <CircuitNumbers {...numbers} />
-            <ModelNumbers {...numbers} spectrum={kind === "driftDiffusion" ? undefined : spectrum} />
+            {!full && <ModelNumbers {...numbers} spectrum={spectrum} />}
             <SpectraList {...numbers} readOnly={numbers.readOnly || fixedStructure} />
             <FrequencyNumbers {...numbers} />
             {props.besideBelow}
+            {full && <ModelNumbers {...numbers} spectrum={undefined} />}
           </div>
         </aside>
       </div>
+      <KeyboardHelp dialog={keys} />
       <PhoneSheet
         document={document}
         onChange={change}
         paths={exposed ?? usualPaths(document)}
         everywhere={exposed !== undefined}
       >
-        <button type="button" className="action" disabled={!bench.canUndo} onClick={bench.undo}>
-          Undo
-        </button>
+        {props.sheetActions ?? (
+          <button type="button" className="action" disabled={!bench.canUndo} onClick={bench.undo}>
+            Undo
+          </button>
+        )}
         {holding}
-        {props.sheetActions}
       </PhoneSheet>
     </div>
   );

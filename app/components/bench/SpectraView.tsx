@@ -108,7 +108,7 @@ export const SpectraView = memo(function SpectraView(props: SpectraViewProps) {
             part={upper}
             arcs={props.arcs}
             xLabelsHidden={stacked}
-            height={phone ? 170 : stacked ? 184 : 220}
+            height={phone ? 170 : stacked ? (residuals.length > 0 ? 132 : 184) : 220}
             initialWidth={344}
             tools={
               <>
@@ -131,7 +131,7 @@ export const SpectraView = memo(function SpectraView(props: SpectraViewProps) {
             title={`${name}, ${partWords[lower]}`}
             part={lower}
             arcs={props.arcs}
-            height={phone ? 170 : stacked ? 230 : 220}
+            height={phone ? 170 : stacked ? (residuals.length > 0 ? 152 : 230) : 220}
             initialWidth={344}
             tools={other}
           />
@@ -148,7 +148,7 @@ export const SpectraView = memo(function SpectraView(props: SpectraViewProps) {
               ) ?? undefined
             }
             yAxis={{ label: `residual, % of |${symbol}|`, unit: "1", scale: "linear" }}
-            height={140}
+            height={stacked ? 130 : 140}
             initialWidth={344}
             legend="none"
             dragging={dragging}

@@ -43,11 +43,15 @@ interface ArcPlotProps {
 export function ArcMarks({ series, geometry, arcs, stale }: ArcPlotProps & { stale: boolean }) {
   const { width, height } = geometry.frame;
   const plane = series.at !== undefined;
+  let previous = Number.NEGATIVE_INFINITY;
   return arcs.map(({ number, peakHz }) => {
     const peak = placeAt(series, geometry, peakHz);
-    const below = plane ? peak.y > geometry.y(0) : peak.y < 30;
+    const below = plane ? peak.y > geometry.y(0) : peak.y < height / 2;
     const left = plane ? peak.x - 10 : geometry.x(peakHz) - 10;
-    const bottom = plane ? peak.y + (below ? 22 : -12) : below ? height - 8 : 16;
+    const crowded = left - previous < 26;
+    const row = crowded ? 34 : 16;
+    const bottom = plane ? peak.y + (below ? 22 : -12) : below ? height + 8 - row : row;
+    previous = plane || crowded ? Number.NEGATIVE_INFINITY : left;
     if (!(left > -10 && left < width - 10 && bottom > 8 && bottom < height + 4)) return null;
     return (
       <g key={number} className="fill-ink" opacity={stale ? 0.4 : 1} data-arc={number}>

@@ -1,8 +1,9 @@
-import { curveCatmullRom, curveMonotoneX } from "@visx/curve";
-import { LinePath } from "@visx/shape";
+import { curveMonotoneX } from "@visx/curve";
+import { line } from "@visx/shape";
 import { memo } from "react";
 import { type Geometry, pixelsOf } from "./geometry";
-import { colourOf, crossesPath, marksPath, type Pixels, type Series } from "./series";
+import { colourOf, crossesPath, marksPath, type Pixels, placesOf, type Series } from "./series";
+import { smoothPath } from "./smoothPath";
 
 interface CurvesProps {
   series: readonly Series[];
@@ -13,8 +14,7 @@ interface CurvesProps {
   glide: boolean;
 }
 
-const horizontal = (point: Pixels) => point.x;
-const vertical = (point: Pixels) => point.y;
+const overX = line<Pixels>({ x: ({ x }) => x, y: ({ y }) => y, curve: curveMonotoneX });
 
 /** The curves and marks of all series, in their order: later ones lie above. Lines pass through every computed point. */
 export const Curves = memo(function Curves({ series, geometry, monotone, glide }: CurvesProps) {
@@ -32,13 +32,10 @@ export const Curves = memo(function Curves({ series, geometry, monotone, glide }
     }
     const held = one.kind === "held";
     return (
-      <LinePath
+      <path
         key={one.id}
         className={glide ? "plot-glide" : undefined}
-        data={points}
-        x={horizontal}
-        y={vertical}
-        curve={monotone ? curveMonotoneX : curveCatmullRom}
+        d={monotone ? (overX(points) ?? "") : smoothPath(points, placesOf(one))}
         fill="none"
         stroke={colourOf(one)}
         strokeWidth={one.width ?? (held ? 1.3 : 2.2)}

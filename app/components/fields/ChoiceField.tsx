@@ -64,7 +64,7 @@ export function LineSelect<Value extends string>(props: LineSelectProps<Value>) 
       value={value}
       disabled={readOnly}
       onChange={(event) => onChange(event.currentTarget.value as Value)}
-      className="h-6 min-w-0 rounded-[2px] bg-transparent text-right"
+      className="h-6 min-w-0 rounded-[2px] bg-transparent"
     >
       {choices.map((choice) => (
         <option key={choice.value} value={choice.value} className="bg-sheet text-ink">

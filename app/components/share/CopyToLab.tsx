@@ -29,9 +29,10 @@ export function CopyToLab({ shareId, document, signedIn, labs, onReturn }: CopyT
       <Link
         to={`/sign-in?to=${encodeURIComponent(href("/shared/:shareId", { shareId }))}`}
         className="action py-0.5"
+        title="After signing in"
         onClick={() => sessionStorage.setItem(key, JSON.stringify(document))}
       >
-        Sign in to copy it to my lab
+        Copy to my lab
       </Link>
     );
   }

@@ -30,12 +30,13 @@ export function NumberGroup({ title, tone, rows = [], children }: NumberGroupPro
         {folded > 0 && (
           <button
             type="button"
-            className="action min-h-6 text-small"
+            className="action min-h-6 shrink-0 text-small"
+            title="Numbers at their defaults"
             aria-expanded={open}
             aria-label={open ? `Hide defaults of ${title}` : `Show ${folded} at their defaults, ${title}`}
             onClick={() => setOpen(!open)}
           >
-            {open ? "fewer" : `${folded} at default`}
+            {open ? "fewer" : `${folded} more`}
           </button>
         )}
       </div>

@@ -22,21 +22,23 @@ export default function LabLayout({ loaderData: { lab, role } }: Route.Component
   const labId = lab.id;
   return (
     <>
-      <Header role={role}>
-        <NavigationLink to={href("/lab/:labId", { labId })} end>
-          {lab.name}
-        </NavigationLink>
-        <nav
-          aria-label="Lab"
-          className="flex gap-x-5 max-md:order-last max-md:w-full max-md:overflow-x-auto max-md:whitespace-nowrap"
-        >
-          <NavigationLink to={href("/lab/:labId/scenarios", { labId })}>Scenarios</NavigationLink>
-          <NavigationLink to={href("/lab/:labId/measurements", { labId })}>Measurements</NavigationLink>
-          <NavigationLink to={href("/lab/:labId/materials", { labId })}>Materials</NavigationLink>
-          <NavigationLink to={href("/lab/:labId/people", { labId })}>People</NavigationLink>
-          <NavigationLink to={href("/lab/:labId/activity", { labId })}>Activity</NavigationLink>
-        </nav>
-      </Header>
+      <Header
+        role={role}
+        place={
+          <NavigationLink to={href("/lab/:labId", { labId })} end>
+            {lab.name}
+          </NavigationLink>
+        }
+        navigation={
+          <>
+            <NavigationLink to={href("/lab/:labId/scenarios", { labId })}>Scenarios</NavigationLink>
+            <NavigationLink to={href("/lab/:labId/measurements", { labId })}>Measurements</NavigationLink>
+            <NavigationLink to={href("/lab/:labId/materials", { labId })}>Materials</NavigationLink>
+            <NavigationLink to={href("/lab/:labId/people", { labId })}>People</NavigationLink>
+            <NavigationLink to={href("/lab/:labId/activity", { labId })}>Activity</NavigationLink>
+          </>
+        }
+      />
       <main id="main" className="px-4 py-2 md:px-6">
         <Outlet />
       </main>

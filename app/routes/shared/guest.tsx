@@ -10,7 +10,7 @@ import { listLabsOf } from "~/models/labs.server";
 import { listSharedMeasurements } from "~/models/overlays.server";
 import { canActAs } from "~/services/authorisation.server";
 import { actorContext } from "~/services/context.server";
-import { quickPrediction } from "~/services/predictions.server";
+import { keptRunOf, quickPrediction } from "~/services/predictions.server";
 import { requireShare } from "~/services/shareAccess.server";
 import { readTheme } from "~/services/theme.server";
 import type { Route } from "./+types/guest";
@@ -18,10 +18,11 @@ import type { Route } from "./+types/guest";
 export async function loader({ request, context, params }: Route.LoaderArgs) {
   const share = await requireShare(request, params.shareId);
   const actor = context.get(actorContext);
-  const [measurements, labs, theme] = await Promise.all([
+  const [measurements, labs, theme, run] = await Promise.all([
     listSharedMeasurements(share.labId, share.measurementIds),
     actor ? listLabsOf(actor.user.id) : [],
     readTheme(request),
+    keptRunOf(share.labId, share.document),
   ]);
   return {
     name: share.scenarioName,
@@ -32,7 +33,7 @@ export async function loader({ request, context, params }: Route.LoaderArgs) {
     exposed: share.exposed,
     expiresAt: share.expiresAt,
     measurements,
-    result: quickPrediction(share.document),
+    result: run?.result ?? quickPrediction(share.document),
     signedIn: actor !== null,
     labs: labs.filter(({ role }) => canActAs(role, "researcher")).map(({ id, name }) => ({ id, name })),
     theme,
@@ -93,9 +94,13 @@ export default function GuestPage({ loaderData, params: { shareId } }: Route.Com
               {copy}
             </>
           }
-          sheetActions={reset}
+          sheetActions={
+            <>
+              {reset}
+              {copy}
+            </>
+          }
         />
-        <div className="mt-4 md:hidden">{copy}</div>
         <p className="mt-3 text-ink-soft text-small">
           Nothing you change here is stored. The link works until <Moment at={expiresAt} />.
           {labInvented && " The lab and its data are invented for the demo."}

@@ -205,6 +205,7 @@ function BenchOf({ loaderData, params }: Pick<Route.ComponentProps, "loaderData"
         }
         fixedStructure={!editable}
         status={status}
+        filledAction={editable && <SaveRevision document={text} baseRevisionNumber={baseRevisionNumber} />}
         actions={
           <>
             {editable && (
@@ -233,7 +234,6 @@ function BenchOf({ loaderData, params }: Pick<Route.ComponentProps, "loaderData"
                 </button>
               </Form>
             )}
-            {editable && <SaveRevision document={text} baseRevisionNumber={baseRevisionNumber} />}
           </>
         }
       />
