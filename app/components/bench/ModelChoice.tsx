@@ -15,7 +15,7 @@ export const ModelChoice = memo(function ModelChoice({ document, onChange, readO
     <label className="flex min-w-0 items-baseline gap-1.5 text-ink-soft">
       model
       <select
-        className="h-6 min-w-0 rounded-[2px] bg-transparent text-ink"
+        className="h-6 min-w-0 grow rounded-[2px] bg-transparent text-ink"
         disabled={readOnly}
         value={document.model?.kind ?? "driftDiffusion"}
         onChange={(event) =>

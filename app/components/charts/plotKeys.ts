@@ -33,7 +33,8 @@ export function plotKeyHandler({ series, cursor, onCursor, onZoom, onLeave }: Pl
     else if (readable.length === 0) return false;
     else {
       const row = readable.findIndex(({ id }) => id === cursor?.seriesId);
-      const one = readable[Math.max(0, row)];
+      // Reading begins at the prediction, which lies above what it is laid over.
+      const one = readable.at(row) as Series;
       const places = placesOf(one);
       const index = cursor && row >= 0 ? nearestIndex(places, cursor.at) : Math.floor(places.length / 2);
       if (key in steps) {
