@@ -2,19 +2,24 @@ import { defineConfig } from "vitest/config";
 
 const alias = { "~": new URL("./app", import.meta.url).pathname };
 
+// A limit only ends what hangs: a busy machine with two cores may be ten times slower than an idle one.
+const limits = { testTimeout: 300_000, hookTimeout: 300_000 };
+
 export default defineConfig({
   test: {
-    reporters: ["default", "./tests/support/closingLine.ts"],
+    reporters: ["default", "./tests/support/tally.ts"],
     projects: [
-      { resolve: { alias }, test: { name: "solver", include: ["tests/solver/**/*.test.ts"], environment: "node" } },
+      {
+        resolve: { alias },
+        test: { name: "solver", include: ["tests/solver/**/*.test.ts"], environment: "node", ...limits },
+      },
       {
         resolve: { alias },
         test: {
           name: "app",
           include: ["tests/app/**/*.test.{ts,tsx}"],
           environment: "node",
-          testTimeout: 30_000,
-          hookTimeout: 60_000,
+          ...limits,
           globalSetup: "tests/support/build.ts",
           setupFiles: "tests/support/environment.ts",
         },
@@ -26,8 +31,7 @@ export default defineConfig({
           include: ["tests/browser/**/*.test.ts"],
           environment: "node",
           fileParallelism: false,
-          testTimeout: 60_000,
-          hookTimeout: 120_000,
+          ...limits,
           globalSetup: "tests/browser/setup.ts",
         },
       },

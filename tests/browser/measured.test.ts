@@ -75,7 +75,7 @@ describe("measured data", () => {
     const slider = guest.page.getByLabel("Numbers to move").getByRole("slider").first();
     await slider.focus();
     for (let turn = 0; turn < 20; turn++) await slider.press("ArrowLeft");
-    await expect.poll(() => plane.getAttribute("aria-label"), { timeout: 20_000 }).not.toBe(before);
+    await expect.poll(() => plane.getAttribute("aria-label"), { timeout: 120_000 }).not.toBe(before);
 
     await page.reload();
     await page

@@ -17,5 +17,5 @@ export default async function setup(project: TestProject) {
   const server = await startServer();
   project.provide("origin", server.origin);
   project.provide("chromium", chromium);
-  return () => server.stop();
+  return async () => void (await server.stop());
 }

@@ -58,6 +58,8 @@ export async function visit(options: VisitOptions = {}): Promise<Visit> {
     reducedMotion: "reduce",
     javaScriptEnabled: options.scripts ?? true,
   });
+  // Waits end when what they wait for is there; on a busy machine that takes its time.
+  context.setDefaultTimeout(120_000);
   const page = await context.newPage();
   const faults: string[] = [];
   await page.exposeFunction("noteViolation", (text: string) => faults.push(`content policy: ${text}`));

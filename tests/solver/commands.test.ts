@@ -37,7 +37,7 @@ function run(command: string, given: string[], input?: string) {
   return { status, stdout, lines: stderr.split("\n").filter((line) => line !== "") };
 }
 
-describe("solve", { timeout: 30_000 }, () => {
+describe("solve", () => {
   test("by its npm script, with a file named from the caller's folder", () => {
     const given = ["--prefix", root, "run", "--silent", "solve", "--", "film.json"];
     const { status, stdout, stderr } = spawnSync("npm", given, { cwd: folder, encoding: "utf8" });
@@ -89,7 +89,7 @@ describe("solve", { timeout: 30_000 }, () => {
     expect(run("solve", ["--help"])).toMatchObject({ status: 0, lines: [], stdout: expect.stringContaining("Usage") }));
 });
 
-describe("sweep", { timeout: 30_000 }, () => {
+describe("sweep", () => {
   test("the product of two paths, the last fastest, tied paths with one value", () => {
     const tied = "stack.layers.0.recombination.electronLifetimeNs+stack.layers.0.recombination.holeLifetimeNs";
     const given = [

@@ -111,7 +111,7 @@ describe("numbers as a scientist types them", () => {
     expect(refused("-1e9", "donorsPerCm3")).toBe("−1×10⁹\u2009cm⁻³ is too small; permitted: 0 to 10²²\u2009cm⁻³");
     expect(refused("1e400", "donorsPerCm3")).toContain("too large");
     expect(refused("1e-400", "donorsPerCm3")).toContain("too small");
-    expect(refused("2.5", "pointsPerDecade")).toContain("not a whole number");
+    expect(refused("10.5", "nodes")).toContain("not a whole number");
     expect(refused("0", "interfaceHoleVelocityCmPerS")).toContain("above 0 up to 10⁹\u2009cm/s");
     expect(refused("", "thicknessNm")).toContain("a value is needed");
     expect(refused("NaN", "thicknessNm")).toContain("does not begin with a number");
@@ -221,7 +221,7 @@ describe("steps", () => {
     expect(stepped(1.6, quantities.gapEV, -1, true)).toBe(1.595);
     expect(stepped(300, quantities.temperatureK, 1, false)).toBe(310);
     expect(stepped(10, quantities.gapEV, 1, false)).toBe(10);
-    expect(stepped(10, quantities.pointsPerDecade, 1, true)).toBe(11);
+    expect(stepped(100, quantities.nodes, 1, true)).toBe(101);
     expect(stepped(0, quantities.donorsPerCm3, -1, false)).toBe(0);
     expect(stepped(0, quantities.donorsPerCm3, 1, false)).toBeGreaterThan(0);
   });

@@ -255,7 +255,7 @@ describe("too many requests", () => {
 });
 
 describe("the end", () => {
-  it("comes with code 0 within two seconds of SIGTERM, though a request hangs", async () => {
+  it("comes with code 0 after SIGTERM, though a request hangs", async () => {
     const ending = await startServer();
     const at = Number(new URL(ending.origin).port);
     const socket = connect(at, "127.0.0.1");
@@ -264,9 +264,8 @@ describe("the end", () => {
       `POST /theme HTTP/1.1\r\nhost: localhost:${at}\r\norigin: ${ending.origin}\r\ncontent-length: 10\r\n\r\nth`,
     );
     await new Promise((resolve) => setTimeout(resolve, 200));
-    const { code, milliseconds } = await ending.stop();
+    // A server that waited for the request would be ended by its own last resort, with code 1.
+    expect(await ending.stop()).toBe(0);
     socket.destroy();
-    expect(code).toBe(0);
-    expect(milliseconds).toBeLessThan(10_000);
   });
 });
