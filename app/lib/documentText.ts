@@ -5,7 +5,7 @@ import { jsonFaultPlace } from "./jsonFault";
 export type DocumentReading = { ok: true; document: ScenarioDocument } | { ok: false; faults: readonly Fault[] };
 
 /** Longest document taken, in characters; a hundred layers with every field are below 200 000. */
-export const longestDocument = 500_000;
+const longestDocument = 500_000;
 
 /** Check a document of any origin; the faults carry path, what is wrong, and what is allowed. */
 export function readDocument(input: unknown): DocumentReading {

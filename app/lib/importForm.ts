@@ -17,7 +17,7 @@ export interface FormFault {
 export const areaQuantity: Quantity = { label: "area", symbol: "A", unit: "cm²", min: 1e-8, max: 1e6 };
 
 /** Number fields of the form. */
-export const importQuantities = {
+const importQuantities = {
   fluxPerCm2S: quantities.fluxPerCm2S,
   areaCm2: areaQuantity,
   modulatedFluxPerCm2S: { ...quantities.fluxPerCm2S, label: "modulated flux", min: 1 } as Quantity,

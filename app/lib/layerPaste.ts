@@ -11,7 +11,7 @@ import { withNumber } from "./stackEdits";
 import { type LayerField, layerFields, numberAt, quantityOf } from "./stackFields";
 import { normaliseText, parseUnit } from "./units";
 
-export interface PasteColumn {
+interface PasteColumn {
   /** The head as pasted, or the field's words where there was none. */
   head: string;
   /** What the column holds; null where it is not known and left out. */
@@ -20,14 +20,14 @@ export interface PasteColumn {
   unit: string;
 }
 
-export interface PasteCell {
+interface PasteCell {
   text: string;
   /** What is wrong with it, or how it was read where that is not plain. */
   error: string | null;
   note: string | null;
 }
 
-export interface PasteRow {
+interface PasteRow {
   cells: PasteCell[];
   /** Values that a layer needs and the row does not have. */
   missing: string | null;

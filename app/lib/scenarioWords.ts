@@ -2,7 +2,7 @@
 import type { ModelKind, ScenarioDocument } from "@demilune/solver";
 import { layerName } from "./stackEdits";
 
-export const modelWords: Record<ModelKind, string> = {
+const modelWords: Record<ModelKind, string> = {
   transit: "transit in a uniform field",
   gaertner: "depletion layer with diffusion",
   diffusion: "diffusion and recombination",

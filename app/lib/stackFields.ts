@@ -5,7 +5,7 @@
 import { type LayerDocument, type Quantity, type QuantityName, quantities } from "@demilune/solver";
 
 export const layerGroups = ["Layer", "Carriers", "Recombination and traps", "Mobile ions"] as const;
-export type LayerGroup = (typeof layerGroups)[number];
+type LayerGroup = (typeof layerGroups)[number];
 
 export interface NumberField {
   /** Keys from the layer (contact, interface) to the number. */

@@ -17,7 +17,7 @@ interface Actor {
 }
 
 /** How the file was read: enough to read it again, or differently. */
-export interface ImportRecord {
+interface ImportRecord {
   settings: ImportSettings;
   /** Which of the file's spectra this is. */
   spectrum: number;
@@ -55,7 +55,7 @@ export interface Measurement extends Provenance {
 export const pointLimit = 20_000;
 
 export const measurementSorts = ["updated", "name", "technique", "sample"] as const;
-export type MeasurementSort = (typeof measurementSorts)[number];
+type MeasurementSort = (typeof measurementSorts)[number];
 const measurementsPerPage = 50;
 
 const sortColumns: Record<MeasurementSort, SQL | typeof measurements.updatedAt | typeof measurements.technique> = {

@@ -23,7 +23,7 @@ const unsafe = (method: string) => !["GET", "HEAD", "OPTIONS"].includes(method);
  * Whether an unsafe request comes from our own pages. A browser says so in `Sec-Fetch-Site`; one that does not send it
  * names the page's origin. Nothing at all is refused. A bearer token without any cookie is no browser's doing.
  */
-export function isOwnRequest(headers: IncomingHttpHeaders, ownOrigin: string): boolean {
+function isOwnRequest(headers: IncomingHttpHeaders, ownOrigin: string): boolean {
   if (headers.authorization?.startsWith("Bearer ") && !headers.cookie) return true;
   const site = headers["sec-fetch-site"];
   return site === undefined ? headers.origin === ownOrigin : site === "same-origin";

@@ -14,7 +14,7 @@ export async function countUpload(userId: string): Promise<void> {
 }
 
 /** A file's name without a path and without characters that no name needs. */
-export function plainFileName(name: string): string {
+function plainFileName(name: string): string {
   const last = name.split(/[\\/]/).at(-1) ?? "";
   const plain = last
     .replace(/[\p{Cc}\p{Cf}]/gu, "")

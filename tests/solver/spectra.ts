@@ -57,7 +57,7 @@ export function logarithmic(fromHz: number, toHz: number, perDecade: number): nu
 }
 
 /** Normal deviates from a fixed seed (Box–Muller on a 32-bit multiplicative generator). */
-export function normalDeviates(seed: number): () => number {
+function normalDeviates(seed: number): () => number {
   let state = seed >>> 0;
   const uniform = () => {
     state = (Math.imul(state, 1664525) + 1013904223) >>> 0;

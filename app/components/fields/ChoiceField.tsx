@@ -1,7 +1,7 @@
 import { useId } from "react";
 import { describedBy, FieldFrame } from "./QuantityField";
 
-export interface Choice<Value extends string> {
+interface Choice<Value extends string> {
   value: Value;
   label: string;
 }

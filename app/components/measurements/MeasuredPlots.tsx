@@ -5,7 +5,7 @@ import type { SpectrumSeries } from "~/components/charts/spectrum";
 import { useLinkedCursor } from "~/components/charts/useLinkedCursor";
 import { techniqueNames, techniqueSymbols } from "~/lib/spectrumNames";
 
-export interface PlottedSpectrum {
+interface PlottedSpectrum {
   id: string;
   label: string;
   frequencyHz: number[];
@@ -25,7 +25,7 @@ interface MeasuredPlotsProps {
 const marks = ["circle", "square", "triangle"] as const;
 
 /** Hollow marks, alone in ink, several told apart by mark and colour. */
-export function measuredSeries(spectra: readonly PlottedSpectrum[]): SpectrumSeries[] {
+function measuredSeries(spectra: readonly PlottedSpectrum[]): SpectrumSeries[] {
   return spectra.map((spectrum, index) => ({
     ...spectrum,
     kind: "measured",

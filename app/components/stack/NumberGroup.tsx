@@ -1,6 +1,6 @@
 import { type ReactNode, useRef, useState } from "react";
 
-export interface NumberRow {
+interface NumberRow {
   key: string;
   /** The number stands at its default: the row is folded away until one asks for it. */
   usual?: boolean;

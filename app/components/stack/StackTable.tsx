@@ -22,9 +22,9 @@ interface StackTableProps extends StackProps {
 }
 
 /** Document path of a layer's number; also the name of its cell in the form. */
-export const cellName = (index: number, field: NumberField): string => `stack.layers.${index}.${field.path.join(".")}`;
+const cellName = (index: number, field: NumberField): string => `stack.layers.${index}.${field.path.join(".")}`;
 /** Name of the cell of an interface's velocity. */
-export const interfaceCellName = (afterLayer: number, field: NumberField): string =>
+const interfaceCellName = (afterLayer: number, field: NumberField): string =>
   `interfaces.${afterLayer}.${field.path[0]}`;
 
 /**

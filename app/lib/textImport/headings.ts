@@ -33,7 +33,7 @@ function headingCells(line: string, format: Format, columns: number): string[] {
 }
 
 /** Name and unit from "name (unit)", "name [unit]", "name / unit", "name in unit", "name_unit". */
-export function splitHeading(text: string): Heading {
+function splitHeading(text: string): Heading {
   const trimmed = text.trim();
   if (trimmed.length > 200) return { name: trimmed.slice(0, 200), unit: null };
   for (const bracket of trimmed.matchAll(/[([]([^()[\]]*(?:\([^()]*\))?[^()[\]]*)[)\]]/g)) {

@@ -51,7 +51,7 @@ function fromHeading(heading: Heading): { role: ColumnRole; reason: string } | n
   return null;
 }
 
-export const isFrequency = (unit: Unit) => hasDimensions(unit, [0, 0, 0, -1]);
+const isFrequency = (unit: Unit) => hasDimensions(unit, [0, 0, 0, -1]);
 
 /** Strictly ascending in equal steps, as sampled time is. */
 export function evenSteps(values: Float64Array): boolean {

@@ -4,9 +4,9 @@
  */
 import * as z from "zod/mini";
 
-export const encodings = ["utf-8", "utf-16le", "utf-16be", "windows-1252"] as const;
-export const delimiters = ["tab", "semicolon", "comma", "spaces"] as const;
-export const decimalMarks = ["point", "comma", "either"] as const;
+const encodings = ["utf-8", "utf-16le", "utf-16be", "windows-1252"] as const;
+const delimiters = ["tab", "semicolon", "comma", "spaces"] as const;
+const decimalMarks = ["point", "comma", "either"] as const;
 export const columnRoles = [
   "frequency",
   "real",

@@ -4,7 +4,7 @@ import { readNumber } from "./numbers";
 import { type Format, findRuns, longestRun, patternOf, type Run } from "./rows";
 
 /** A stretch of data rows; `textBefore` are the lines of text between it and the stretch before. */
-export interface Section {
+interface Section {
   firstRow: number;
   textBefore: number[];
 }

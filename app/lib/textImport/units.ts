@@ -6,7 +6,7 @@
 /** Exponents of ampere, volt, metre, second. */
 export type Dimensions = readonly [ampere: number, volt: number, metre: number, second: number];
 
-export type Scale = "linear" | "degree" | "radian" | "angularFrequency" | "decibel" | "decade" | "relative";
+type Scale = "linear" | "degree" | "radian" | "angularFrequency" | "decibel" | "decade" | "relative";
 
 export interface Unit {
   /** Times this gives SI. */
@@ -98,7 +98,7 @@ for (const [names, unit] of [
 }
 
 /** One spelling for the many of the same character. */
-export function plainUnit(text: string): string {
+function plainUnit(text: string): string {
   return text
     .normalize("NFKC")
     .replaceAll("μ", "µ")

@@ -129,7 +129,7 @@ function chooseLevel(all: LeastSquares, counts: number[], data: number, floor: n
 }
 
 /** Standard score of the number of runs of equal sign; negative where signs cling together. */
-export function runsScore(values: readonly number[]): number {
+function runsScore(values: readonly number[]): number {
   const signs = values.filter((value) => value !== 0).map(Math.sign);
   const plus = signs.filter((sign) => sign > 0).length;
   const minus = signs.length - plus;

@@ -66,7 +66,7 @@ export function circuitEquation(problem: Problem, operation: Operation, current:
   };
 }
 
-export const voltageIsUnknown = (problem: Problem, operation: Operation): boolean =>
+const voltageIsUnknown = (problem: Problem, operation: Operation): boolean =>
   operation.kind === "openCircuit" || (problem.device.circuit.seriesResistance > 0 && !operation.inside);
 
 /** J_x/q at the state assembled last: from the balance or from the cut edge, whichever is less noisy. */

@@ -50,7 +50,7 @@ export interface FittedParameter {
   identifiable: boolean;
 }
 
-export type FitStatus = "converged" | "budgetExhausted" | "notSolved" | "aborted";
+type FitStatus = "converged" | "budgetExhausted" | "notSolved" | "aborted";
 
 export interface FitResult {
   status: FitStatus;

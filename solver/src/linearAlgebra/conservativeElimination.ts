@@ -125,7 +125,7 @@ class Block {
 }
 
 /** x at every node and j at every edge, m × drives each; null when singular. */
-export function eliminate(
+function eliminate(
   system: ConservativeSystem,
   omega: number,
   meeting: number,

@@ -28,7 +28,7 @@ export interface Relaxation {
   row: Float64Array;
 }
 
-export interface Drive {
+interface Drive {
   /** b, nodes × m; none when left out. */
   atNodes?: Float64Array;
   /** j⁰, edges × m; none when left out. */
@@ -70,7 +70,7 @@ export interface Readings {
   status: ConservativeStatus[];
 }
 
-export interface ReadingRequest {
+interface ReadingRequest {
   /** Edge at which J is read. */
   edge: number;
   /** Compare J with that of all other edges (default true; without it the solution takes two thirds of the time). */

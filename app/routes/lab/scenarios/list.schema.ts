@@ -9,7 +9,6 @@ export const listState = z.object({
   show: z.enum(["kept", "archived"]).catch("kept"),
   page: z.coerce.number().int().min(1).max(10_000).catch(1),
 });
-export type ListState = z.infer<typeof listState>;
 
 const scenarioId = z.string().min(1);
 export const listAction = z.discriminatedUnion("intent", [

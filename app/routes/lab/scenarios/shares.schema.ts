@@ -2,7 +2,7 @@ import { z } from "zod";
 import { shareDays } from "~/models/shares.server";
 
 /** Most numbers that are exposed one by one; they stand as sliders under the thumb. */
-export const exposedMost = 3;
+const exposedMost = 3;
 
 const create = z.object({
   intent: z.literal("create"),
