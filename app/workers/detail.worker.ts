@@ -37,9 +37,14 @@ function answerTo(question: DetailQuestion): Details[DetailName]["answer"] {
   const scenario = parseScenario(question.document);
   switch (question.name) {
     case "currentVoltage": {
-      const light = currentVoltageCurve(scenario);
-      const to = light.voltageV.at(-1);
-      return { light, dark: currentVoltageCurve(scenario, { fluxPerCm2S: 0, fromV: light.voltageV[0], toV: to }) };
+      const light = currentVoltageCurve(scenario, { ions: "follow" });
+      const range = { fromV: light.voltageV[0], toV: light.voltageV.at(-1) };
+      const { heldAt } = question;
+      return {
+        light,
+        held: heldAt && currentVoltageCurve(scenario, { ions: heldAt, ...range }),
+        dark: currentVoltageCurve(scenario, { ions: "follow", fluxPerCm2S: 0, ...range }),
+      };
     }
     case "profiles":
       return solved(profilesOf(operatingPointsOf(scenario), question));

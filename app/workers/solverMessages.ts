@@ -47,8 +47,12 @@ interface At {
 
 /** Slower questions about one scenario, and what answers them. */
 export interface Details {
-  /** Under the scenario's light and in the dark. */
-  currentVoltage: { ask: object; answer: { light: CurrentVoltageCurve; dark: CurrentVoltageCurve } };
+  /** Under the scenario's light with ions that follow and with ions held, and in the dark. */
+  currentVoltage: {
+    /** Where the ions are held; null where none move. */
+    ask: { heldAt: At | null };
+    answer: { light: CurrentVoltageCurve; held: CurrentVoltageCurve | null; dark: CurrentVoltageCurve };
+  };
   profiles: { ask: At; answer: Profiles };
   harmonicProfiles: { ask: At & { technique: Technique; frequencyHz: number }; answer: HarmonicProfiles };
   /** Of a curve whatever it comes from: needs no document. */

@@ -15,10 +15,22 @@ interface Drag {
   number: RegExp;
   /** ms within which a repaint is promised. */
   bar: number;
+  /** What is asked for instead of what the starter asks for; nothing is then laid over. */
+  ask?: object;
 }
 
 const drags: Record<string, Drag> = {
   closedForm: { scenario: "Mesoporous dye film", number: /electron lifetime/, bar: 33 },
+  /** The promise's own case: IMPS and IMVS at 41 frequencies, nothing laid over. */
+  fullModel41: {
+    scenario: "p-i-n perovskite, mobile cations, better film",
+    number: /cation mobility/,
+    bar: 100,
+    ask: {
+      spectra: [{ technique: "imps" }, { technique: "imvs" }],
+      frequencies: { fromHz: 0.1, toHz: 1e7, pointsPerDecade: 5 },
+    },
+  },
   fullModel: { scenario: "p-i-n perovskite, mobile cations", number: /cation mobility/, bar: 100 },
 };
 
@@ -83,21 +95,30 @@ export async function run(say: (line: string) => void) {
     const page = await browser.newPage({ baseURL: server.origin, viewport: { width: 1440, height: 900 } });
     await page.goto("/");
     await page.getByRole("button", { name: "as researcher" }).click();
-    await page.waitForURL(/\/lab\/[^/]+$/);
+    await page.waitForURL(/\/lab\/[^/]+\/scenarios\/[^/]+$/);
     const client = createClient({ url: `file:${server.dataFolder}/demilune.db`, timeout: 10_000 });
     const results: Record<string, object> = {};
     for (const [name, drag] of Object.entries(drags)) {
       const lab = new URL(page.url()).pathname.split("/")[2];
       const sql = "SELECT id FROM scenarios WHERE lab_id = ? AND name = ?";
       const { rows } = await client.execute({ sql, args: [lab, drag.scenario] });
-      await page.goto(`/lab/${lab}/scenarios/${rows[0].id}`);
+      const scenarioId = String(rows[0].id);
+      if (drag.ask) {
+        const change = "UPDATE revisions SET document = json_patch(document, ?) WHERE scenario_id = ?";
+        await client.execute({ sql: change, args: [JSON.stringify(drag.ask), scenarioId] });
+        await client.execute({ sql: "DELETE FROM overlays WHERE scenario_id = ?", args: [scenarioId] });
+      }
+      await page.goto(`/lab/${lab}/scenarios/${scenarioId}`);
       await page.waitForFunction(
         () => document.querySelector("[data-milliseconds]")?.getAttribute("data-busy") === "false",
       );
+      const worker = async () => Number(await page.getAttribute("[data-milliseconds]", "data-milliseconds"));
       const found = (await times(page, drag)).toSorted((one, other) => one - other);
       const timing = timingOf(found);
       const late = found[Math.ceil(0.95 * found.length) - 1];
-      say(`${name}: ${words(timing)}, 95 % within ${late.toFixed(1)} ms; promised ${drag.bar} ms`);
+      say(
+        `${name}: ${words(timing)}, 95 % within ${late.toFixed(1)} ms; promised ${drag.bar} ms; worker, last answer ${(await worker()).toFixed(1)} ms`,
+      );
       results[name] = { ...timing, p95Ms: late, promisedMs: drag.bar };
     }
     client.close();

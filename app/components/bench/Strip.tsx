@@ -1,3 +1,4 @@
+import { memo } from "react";
 import { useMediaQuery } from "~/components/ui/useMediaQuery";
 import { panes } from "./panes";
 import type { PaneContext } from "./panes/pane";
@@ -5,7 +6,7 @@ import { Tabs } from "./Tabs";
 import { useAddressChoice } from "./useAddressChoice";
 
 /** The strip under the spectra: as many neighbouring panes as fit stand side by side, two from 1280 px, one below. */
-export function Strip(context: PaneContext) {
+function AllPanes(context: PaneContext) {
   const offered = panes.filter(({ available }) => available?.(context) ?? true);
   const [wanted, choose] = useAddressChoice("pane", offered[0].id);
   const chosen = Math.max(
@@ -45,3 +46,6 @@ export function Strip(context: PaneContext) {
     </section>
   );
 }
+
+/** Drawn anew only once a drag has ended and the spectra are there: until then its panes wait anyway. */
+export const Strip = memo(AllPanes, (_, { waiting }) => waiting);

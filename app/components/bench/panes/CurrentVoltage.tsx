@@ -1,84 +1,141 @@
+import type { Bias, CurrentVoltageCurve, ScenarioDocument } from "@demilune/solver";
 import { useMemo } from "react";
 import type { Series } from "~/components/charts/series";
 import { useLinkedCursor } from "~/components/charts/useLinkedCursor";
 import { XYPlot } from "~/components/charts/XYPlot";
 import { RichText } from "~/components/ui/RichText";
-import { formatNumber, formatQuantity } from "~/lib/numberFormat";
+import { ScrollRegion } from "~/components/ui/scrollRegion";
+import { formatNumber } from "~/lib/numberFormat";
 import { useDetail } from "~/workers/useDetail";
+import { useAddressChoice } from "../useAddressChoice";
 import { DetailState } from "./DetailState";
 import type { PaneContext } from "./pane";
 
-const whole = {};
+interface PreBias {
+  id: string;
+  label: string;
+  bias: Bias;
+  dark?: true;
+}
 
-/** Current–voltage curves under the scenario's light and in the dark, every point in the steady state. */
+/** Where a fast scan may start from. */
+const preBiases: readonly PreBias[] = [
+  { id: "dark", label: "short circuit in the dark", bias: "shortCircuit", dark: true },
+  { id: "short", label: "short circuit under light", bias: "shortCircuit" },
+  { id: "open", label: "open circuit under light", bias: "openCircuit" },
+];
+
+const hasIons = ({ stack }: ScenarioDocument) =>
+  stack.layers.some(({ ions }) => (ions?.cationsPerCm3 ?? 0) > 0 || (ions?.anionsPerCm3 ?? 0) > 0);
+
+const printed = (value: number | null | undefined, digits: number) =>
+  value === null || value === undefined ? "–" : formatNumber(value, digits);
+
+const heads = ["*V*_{oc} / V", "*J*_{sc} / mA cm⁻²", "fill factor", "largest power / mW cm⁻²", "at / V"];
+
+function Figures({ name, curve }: { name: string; curve: CurrentVoltageCurve }) {
+  const { openCircuitVoltageV, shortCircuitMAPerCm2, fillFactor, maximumPower } = curve;
+  return (
+    <tr>
+      <th scope="row">{name}</th>
+      <td>{printed(openCircuitVoltageV, 4)}</td>
+      <td>{printed(shortCircuitMAPerCm2, 4)}</td>
+      <td>{printed(fillFactor, 3)}</td>
+      <td>{printed(maximumPower?.powerMWPerCm2, 4)}</td>
+      <td>{printed(maximumPower?.voltageV, 3)}</td>
+    </tr>
+  );
+}
+
+/** Current–voltage curves: under the scenario's light with ions that follow and with ions held, and in the dark. */
 export function CurrentVoltage({ document, waiting }: PaneContext) {
-  const detail = useDetail("currentVoltage", document, waiting ? null : whole);
+  const [wanted, choose] = useAddressChoice("ions", "dark");
+  const start = preBiases.find(({ id }) => id === wanted) ?? preBiases[0];
+  const ions = hasIons(document);
+  const flux = start.dark ? 0 : document.light.fluxPerCm2S;
+  const ask = useMemo(
+    () => (waiting ? null : { heldAt: ions ? { bias: start.bias, fluxPerCm2S: flux } : null }),
+    [waiting, ions, start, flux],
+  );
+  const detail = useDetail("currentVoltage", document, ask);
   const linked = useLinkedCursor();
   const series = useMemo<Series[]>(() => {
     if (!detail.value) return [];
-    const { light, dark } = detail.value;
+    const { light, held, dark } = detail.value;
+    const drawn = (curve: CurrentVoltageCurve, style: Omit<Series, "kind" | "x" | "y">): Series => ({
+      kind: "prediction",
+      x: curve.voltageV,
+      y: curve.currentMAPerCm2,
+      ...style,
+    });
     return [
-      {
-        id: "dark",
-        label: "in the dark",
-        kind: "prediction",
-        colour: "ink",
-        dash: "6 3",
-        width: 1.6,
-        x: dark.voltageV,
-        y: dark.currentMAPerCm2,
-      },
-      { id: "light", label: "under this light", kind: "prediction", x: light.voltageV, y: light.currentMAPerCm2 },
+      drawn(dark, { id: "dark", label: "in the dark", colour: "ink", dash: "2 3", width: 1.6 }),
+      ...(held ? [drawn(held, { id: "held", label: "light, ions held", colour: 2, dash: "6 3", width: 1.8 })] : []),
+      drawn(light, { id: "light", label: held ? "light, ions follow" : "under this light" }),
     ];
   }, [detail.value]);
   return (
-    <DetailState detail={detail}>
-      {({ light }) => {
-        const { openCircuitVoltageV, shortCircuitMAPerCm2, fillFactor, maximumPower, failures } = light;
-        const facts = [
-          ["*V*_{oc}", openCircuitVoltageV === null ? "–" : formatQuantity(openCircuitVoltageV, "V", 4)],
-          ["*J*_{sc}", shortCircuitMAPerCm2 === null ? "–" : formatQuantity(shortCircuitMAPerCm2, "mA/cm²", 4)],
-          ["fill factor", fillFactor === null ? "–" : formatNumber(fillFactor, 3)],
-          [
-            "maximum power",
-            maximumPower
-              ? `${formatQuantity(maximumPower.powerMWPerCm2, "mW/cm²", 4)} at ${formatQuantity(maximumPower.voltageV, "V", 3)}`
-              : "–",
-          ],
-        ];
-        const shortCircuit = Math.abs(shortCircuitMAPerCm2 ?? 0);
-        return (
-          <>
-            <XYPlot
-              title="Current–voltage curve under light and in the dark"
-              xAxis={{ label: "*V*", unit: "V", scale: "linear" }}
-              yAxis={{ label: "*J*, + = photocurrent", unit: "mA/cm²", scale: "linear" }}
-              yRange={shortCircuit > 0 ? [-0.5 * shortCircuit, 1.7 * shortCircuit] : undefined}
-              series={series}
-              height={260}
-              {...linked}
-            />
-            <dl className="mt-2 flex flex-wrap gap-x-6">
-              {facts.map(([name, text]) => (
-                <div key={name} className="flex gap-1.5">
-                  <dt className="text-ink-soft">
-                    <RichText text={name} />
-                  </dt>
-                  <dd>
-                    <RichText text={text} />
-                  </dd>
-                </div>
-              ))}
-            </dl>
-            <p className="mt-1 text-ink-soft">
-              {document.stack.ionsFrozenAt
-                ? "Ions are held where the scenario left them: the limit of a fast scan. A scan at a finite rate lies between this and the steady curve."
-                : "Ions follow at every voltage: the limit of a slow scan. A scan at a finite rate lies between this and the curve with frozen ions."}
-              {failures.length > 0 && ` ${failures.length} voltages were not reached and are left out.`}
-            </p>
-          </>
-        );
-      }}
-    </DetailState>
+    <>
+      {ions && (
+        <label className="mb-2 flex items-baseline gap-2">
+          <span className="text-ink-soft">ions held as they stand at</span>
+          <select
+            className="min-w-0 rounded bg-transparent py-0.5 text-tide"
+            value={start.id}
+            onChange={(event) => choose(event.currentTarget.value)}
+          >
+            {preBiases.map(({ id, label }) => (
+              <option key={id} value={id} className="bg-sheet text-ink">
+                {label}
+              </option>
+            ))}
+          </select>
+        </label>
+      )}
+      <DetailState detail={detail}>
+        {({ light, held, dark }) => {
+          const shortCircuit = Math.abs(light.shortCircuitMAPerCm2 ?? 0);
+          const failures = light.failures.length + dark.failures.length + (held?.failures.length ?? 0);
+          return (
+            <>
+              <XYPlot
+                title="Current–voltage curves under light and in the dark"
+                xAxis={{ label: "*V*", unit: "V", scale: "linear" }}
+                yAxis={{ label: "*J*, + = photocurrent", unit: "mA/cm²", scale: "linear" }}
+                yRange={shortCircuit > 0 ? [-0.5 * shortCircuit, 1.9 * shortCircuit] : undefined}
+                series={series}
+                height={280}
+                {...linked}
+              />
+              <ScrollRegion label="Figures of the curves">
+                <table className="table numbers">
+                  <caption className="sr-only">Figures of the curves under light</caption>
+                  <thead>
+                    <tr>
+                      <td className="border-t-0" />
+                      {heads.map((head) => (
+                        <th key={head} scope="col">
+                          <RichText text={head} />
+                        </th>
+                      ))}
+                    </tr>
+                  </thead>
+                  <tbody>
+                    <Figures name={held ? "ions follow" : "under light"} curve={light} />
+                    {held && <Figures name="ions held" curve={held} />}
+                  </tbody>
+                </table>
+              </ScrollRegion>
+              <p className="mt-2 text-ink-soft text-small">
+                {held
+                  ? "Ions that follow are the limit of a slow scan, ions held that of a fast one. A scan at a finite rate lies between."
+                  : "Every point is a steady state."}
+                {failures > 0 && ` ${failures} voltages were not reached and are left out.`}
+              </p>
+            </>
+          );
+        }}
+      </DetailState>
+    </>
   );
 }
