@@ -32,7 +32,7 @@ it("predicts, holds, saves, lays a measurement over and shares by keyboard alone
   const mobility = page.getByRole("spinbutton", { name: /cation mobility/ }).first();
   const start = await mobility.getAttribute("aria-valuenow");
   await press(mobility, "PageUp");
-  // The slow arc is the ions': its frequency goes with their mobility (transit of a screening layer, ∂ln f/∂ln µ near 1).
+  // The slow arc is the ions': its frequency goes with their mobility (∂ln f/∂ln µ near 1; from memory).
   await expect
     .poll(async () => printedNumber(await slowPeak.textContent()) / before, { timeout: 30_000 })
     .toBeGreaterThan(7);
