@@ -12,11 +12,11 @@ import { settings } from "~/services/settings.server";
 import type { Route } from "./+types/shares";
 import { shareAction } from "./shares.schema";
 
-/** Every number of a document that holds one, with its words; none where the document cannot be solved as written. */
+/** Every number of a document that a slider can move: of the device, its light and circuit, and not zero; with its words; none where the document cannot be solved as written. */
 function movable(document: ScenarioDocument) {
   try {
     return parametersOf(parseScenario(document))
-      .filter(({ value }) => value !== null)
+      .filter(({ path, value }) => value !== null && value !== 0 && /^(stack|light|circuit)\./.test(path))
       .map(({ path, label }) => ({ path, label }));
   } catch (error) {
     if (error instanceof ScenarioError) return [];
