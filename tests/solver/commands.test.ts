@@ -27,8 +27,8 @@ writeFileSync(
 
 /** As `npm run` would start it in the caller's folder, without npm's own second. */
 function run(command: string, given: string[], input?: string) {
-  const tsx = join(root, "node_modules/.bin/tsx");
-  const { status, stdout, stderr } = spawnSync(tsx, [join(root, `solver/src/commands/${command}.ts`), ...given], {
+  const program = join(root, `solver/src/commands/${command}.ts`);
+  const { status, stdout, stderr } = spawnSync(process.execPath, ["--import", "tsx", program, ...given], {
     cwd: root,
     env: { ...process.env, INIT_CWD: folder },
     encoding: "utf8",

@@ -1,5 +1,5 @@
 /** Exact spectra with known arcs, shared by the tests of the analysis. */
-import { add, type Complex, complex, divide, multiply, scale } from "../../solver/src/analysis/complexNumber.ts";
+import { add, type Complex, complex, divide, multiply, scale } from "../../solver/src/numerics/complex.ts";
 
 export type Response = (omega: number) => Complex;
 

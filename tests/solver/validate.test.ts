@@ -71,6 +71,17 @@ describe("Kramers–Kronig", () => {
     }
   });
 
+  test.each([
+    ["first", 0],
+    ["last", 70],
+  ])("names a real part that is off by 5 percent at the %s frequency", patient, (_, at) => {
+    const data = sampled(logarithmic(0.1, 1e6, 10), relaxation(160, 1), 0.001, 5);
+    expect(validateMeasured(data).kramersKronig.verdict).toBe("holds");
+    const re = data.re.with(at, data.re[at] + 0.05);
+    const { verdict, worstHz } = validateMeasured({ ...data, re }).kramersKronig;
+    expect({ verdict, worstHz }).toEqual({ verdict: "fails", worstHz: data.frequencyHz[at] });
+  });
+
   test.each([0, 0.002, 0.005])("names a single outlier at noise %f and holds without it", patient, (noise) => {
     const data = sweep(twoQuadrants, noise, 11);
     for (const at of [6, 30, 50]) {

@@ -18,7 +18,7 @@
  * | a, b | real and imaginary part of the weights | 1 |
  */
 import { EigenvalueDecomposition, Matrix, SingularValueDecomposition } from "ml-matrix";
-import { add, type Complex, complex, divide, modulus, multiply, scale, subtract } from "./complexNumber.ts";
+import { add, type Complex, complex, divide, modulus, multiply, scale, subtract } from "../numerics/complex.ts";
 
 export interface Samples {
   readonly omega: ArrayLike<number>;

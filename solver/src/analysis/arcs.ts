@@ -13,8 +13,9 @@
  * 4. neighbours of one sign are different arcs where |Im| of their sum has a valley between two maxima;
  * 5. a weak satellite without a maximum of its own is the tail of its stronger neighbour.
  */
+
+import { add, type Complex, complex, divide, modulus, multiply, subtract } from "../numerics/complex.ts";
 import { evaluate, fitRational, poles, type RationalFit, residue, type Samples } from "./aaa.ts";
-import { add, type Complex, complex, divide, modulus, multiply, subtract } from "./complexNumber.ts";
 import {
   type Draft,
   type Element,

@@ -19,8 +19,8 @@
  * BIT 15, 49 (1975)).
  */
 import { minimise } from "../fit/levenbergMarquardt.ts";
+import { add, type Complex, complex } from "../numerics/complex.ts";
 import type { Samples } from "./aaa.ts";
-import { add, type Complex, complex } from "./complexNumber.ts";
 import { type LeastSquares, leastSquares, projectOut } from "./leastSquares.ts";
 
 export type Shape = "relaxation" | "depressed" | "diffusion" | "sheet" | "transit" | "uniformTransit" | "resonance";

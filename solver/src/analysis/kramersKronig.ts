@@ -16,8 +16,9 @@
  * | scale | standard deviation of Re and of Im per point, or its shape | spectrum's, or relative |
  * | leverage | diagonal of the projection on the model: residual left out = residual/(1 − leverage) | 1 |
  */
+
+import { type Complex, complex } from "../numerics/complex.ts";
 import type { Samples } from "./aaa.ts";
-import { type Complex, complex } from "./complexNumber.ts";
 import { ElementModel, elementAt } from "./elements.ts";
 import { type LeastSquares, leastSquares } from "./leastSquares.ts";
 import type { Verdict } from "./verdict.ts";
@@ -51,6 +52,8 @@ const levels = [1, 2, 4, 8];
 const margin = 1;
 /** Below this, relative to the largest modulus, a residual is the arithmetic of the data file, not a violation. */
 const arithmetic = 1e-6;
+/** Amplitudes that a point near the end may need, in units of the largest modulus. */
+const amplitudeNearEnd = 3;
 /** Standard errors at which a smooth violation is marginal and fails. */
 const marginalAt = 3;
 const failsAt = 4;
@@ -111,6 +114,9 @@ function elementColumns(samples: Samples, scale: ArrayLike<number>, enough: numb
     .elements.map((element) => columnOf(samples, scale, (value) => elementAt({ ...element, amplitude: 1 }, value)));
 }
 
+const informationCriterion = (square: number, data: number, rank: number): number =>
+  data * Math.log(square / data) + 2 * rank + (2 * rank * (rank + 1)) / (data - rank - 1);
+
 /** The level with the lowest corrected information criterion. */
 function chooseLevel(all: LeastSquares, counts: number[], data: number, floor: number): number {
   let best = counts[0];
@@ -118,8 +124,7 @@ function chooseLevel(all: LeastSquares, counts: number[], data: number, floor: n
   for (const count of counts) {
     const rank = all.basis.slice(0, count).filter((vector) => vector !== null).length;
     if (data - rank - 1 < 4) continue;
-    const square = Math.max(all.squares[count], floor);
-    const criterion = data * Math.log(square / data) + 2 * rank + (2 * rank * (rank + 1)) / (data - rank - 1);
+    const criterion = informationCriterion(Math.max(all.squares[count], floor), data, rank);
     if (criterion < lowest) {
       lowest = criterion;
       best = count;
@@ -159,13 +164,21 @@ interface Attempt {
   leverage: Float64Array;
   /** Data less unknowns. */
   degrees: number;
+  /** Columns taken. */
+  chosen: number;
 }
 
 /** Fit of the level that the criterion chooses; `first` columns come before the grid and are in every level. */
-function attempt(columns: Float64Array[], counts: number[], target: Float64Array, floor: number): Attempt {
-  const all = leastSquares(columns, target, 1e-12);
+function attempt(
+  columns: Float64Array[],
+  counts: number[],
+  target: Float64Array,
+  floor: number,
+  least: number,
+): Attempt {
+  const all = leastSquares(columns, target, 1e-12, least);
   const chosen = chooseLevel(all, counts, target.length, target.length * (0.01 * floor) ** 2);
-  const { basis, residual } = leastSquares(columns.slice(0, chosen), target, 1e-12);
+  const { basis, residual } = leastSquares(columns.slice(0, chosen), target, 1e-12, least);
   const leverage = new Float64Array(target.length);
   for (const vector of basis) {
     vector?.forEach((entry, row) => {
@@ -173,8 +186,20 @@ function attempt(columns: Float64Array[], counts: number[], target: Float64Array
     });
   }
   const rank = basis.filter((vector) => vector !== null).length;
-  return { residual, leverage, degrees: Math.max(1, target.length - rank) };
+  return { residual, leverage, degrees: Math.max(1, target.length - rank), chosen };
 }
+
+/** Variance of the residuals per degree of freedom. */
+const meanSquare = ({ residual, degrees }: Pick<Attempt, "residual" | "degrees">): number =>
+  residual.reduce((sum, value) => sum + value * value, 0) / degrees;
+
+/** |Δ|² of one point, Re and Im, with the point left out of the fit. */
+const squareLeftOut = ({ residual, leverage }: Pick<Attempt, "residual" | "leverage">, k: number): number =>
+  [2 * k, 2 * k + 1].reduce((sum, row) => sum + residual[row] ** 2 / Math.max(1 - leverage[row], 0.05), 0);
+
+/** Chance of the worst of N points: |Δ|²/σ² of Re and Im is χ² with two degrees of freedom, P(> x) = exp(−x/2). */
+const outlierProbability = (square: number, reference: number, count: number): number =>
+  count * Math.exp(-square / (reference * reference) / 2);
 
 interface Judgement {
   verdict: Verdict;
@@ -197,7 +222,7 @@ function judge(
   const count = omega.length;
   const rough = roughness(residual) * Math.sqrt((2 * count) / degrees);
   const reference = Math.max(known ? noise : Math.min(noise, rough), floor);
-  const size = Math.sqrt(residual.reduce((sum, value) => sum + value * value, 0) / degrees);
+  const size = Math.sqrt(meanSquare({ residual, degrees }));
   // standard error of the ratio: that of the residual's scale, and of the noise where it is estimated from the same points
   const standardError = Math.sqrt(1 / (2 * degrees) + (known ? 0 : 1 / count));
   const excess = (size / reference - 1) / standardError;
@@ -205,12 +230,10 @@ function judge(
   let worst = 0;
   let worstSquare = -1;
   for (let k = 0; k < count; k++) {
-    let square = 0;
-    for (const row of [2 * k, 2 * k + 1]) square += residual[row] ** 2 / Math.max(1 - leverage[row], 0.05);
+    const square = squareLeftOut({ residual, leverage }, k);
     if (square > worstSquare) [worst, worstSquare] = [k, square];
   }
-  // |Δ|²/σ² of Re and Im together is χ² with two degrees of freedom: P(> x) = exp(−x/2), any of N points
-  const chance = count * Math.exp(-worstSquare / (reference * reference) / 2);
+  const chance = outlierProbability(worstSquare, reference, count);
   const part = (offset: number) => Array.from({ length: count }, (_, k) => residual[2 * k + offset]);
   const runs = size > floor ? -Math.min(runsScore(part(0)), runsScore(part(1))) : 0;
   const findings: [Verdict, string][] = [
@@ -258,9 +281,9 @@ function basisOf(samples: Samples, scale: ArrayLike<number>, withElements: boole
   return { first, grid, counts, target, floor: (arithmetic * largestOf(samples)) / meanOf(scale) };
 }
 
-function attemptAt({ first, grid, target, floor }: Basis, counts: number[]): Attempt {
+function attemptAt({ first, grid, target, floor }: Basis, counts: number[], least = 0): Attempt {
   const sizes = counts.map((entry) => entry + first.length);
-  return attempt([...first, ...grid], sizes, target, floor);
+  return attempt([...first, ...grid], sizes, target, floor, least);
 }
 
 function fitAndJudge(
@@ -282,11 +305,9 @@ const meanOf = (scale: ArrayLike<number>): number =>
 const without = (values: ArrayLike<number>, at: number): number[] => Array.from(values).filter((_, k) => k !== at);
 
 /** Points in the order of their residual, each left out. */
-function ranked({ residual, leverage }: Attempt): number[] {
-  const square = (row: number) => residual[row] ** 2 / Math.max(1 - leverage[row], 0.05);
-  return Array.from({ length: residual.length / 2 }, (_, k) => k).sort(
-    (a, b) => square(2 * b) + square(2 * b + 1) - square(2 * a) - square(2 * a + 1),
-  );
+function ranked(tried: Attempt): number[] {
+  const squares = Array.from({ length: tried.residual.length / 2 }, (_, k) => squareLeftOut(tried, k));
+  return squares.map((_, k) => k).sort((a, b) => squares[b] - squares[a]);
 }
 
 /** A fit without one point holds, and the point itself is the fault. */
@@ -301,6 +322,39 @@ function outlierOf(
   for (const at of candidates) {
     const rest = { omega: without(samples.omega, at), re: without(samples.re, at), im: without(samples.im, at) };
     if (fitAndJudge(rest, without(scale, at), noise, known, withElements).verdict === "holds") return at;
+  }
+  return null;
+}
+
+/**
+ * A point near either end that the others do not announce. There the finest columns can follow any single point, but
+ * only with amplitudes far above the spectrum's own that nearly cancel, so columns are left out whose part that is not
+ * in those before them would drown in the noise at such an amplitude.
+ */
+function outlierNearEnd(samples: Samples, scale: ArrayLike<number>, noise: number, known: boolean): number | null {
+  const count = samples.omega.length;
+  const basis = basisOf(samples, scale, false);
+  const sizes = [0, ...basis.counts];
+  const least = noise / (amplitudeNearEnd * largestOf(samples));
+  const examined = (at: number) => {
+    const dropped = (column: Float64Array) => column.filter((_, row) => row >> 1 !== at);
+    const { first, grid, target } = basis;
+    const rest = { ...basis, first: first.map(dropped), grid: grid.map(dropped), target: dropped(target) };
+    const others = attemptAt(rest, sizes, least);
+    const { verdict, reference } = judge(others, without(samples.omega, at), noise, known, basis.floor);
+    const square = squareLeftOut(attemptAt(basis, [others.chosen - first.length], least), at);
+    const odd = verdict === "holds" && outlierProbability(square, reference, count) < outlierChance.fails;
+    const { residual, degrees } = others;
+    const left = informationCriterion(meanSquare(others) * degrees, residual.length, residual.length - degrees);
+    return { at, odd, left };
+  };
+  for (const end of [
+    [0, 1],
+    [count - 1, count - 2],
+  ]) {
+    const [better, worse] = end.map(examined).sort((a, b) => a.left - b.left);
+    // An outlier bends the fit at its neighbour too: the one without which the rest is described best is at fault.
+    if (better.odd || worse.odd) return better.at;
   }
   return null;
 }
@@ -332,33 +386,36 @@ export function kramersKronig(
   const { omega, re, im } = samples;
   const count = omega.length;
   const largest = largestOf(samples);
+  const alone = (outlier: number): Pick<Fit, "verdict" | "worst" | "reason"> => {
+    const hz = Number((omega[outlier] / (2 * Math.PI)).toPrecision(4));
+    const reason = `the point at ${hz} Hz does not fit; without it the relations hold`;
+    return { verdict: "fails", worst: outlier, reason };
+  };
   let fit = fitAndJudge(samples, scale, noise, known, false);
-  if (fit.verdict !== "holds") {
+  const nearEnd = outlierNearEnd(samples, scale, noise, known);
+  if (nearEnd !== null) fit = { ...fit, ...alone(nearEnd) };
+  else if (fit.verdict !== "holds") {
     const suspects = suspicious(samples, scale, fit);
     const freer = fitAndJudge(samples, scale, noise, known, true);
-    const square = (one: Fit) => one.residual.reduce((sum, value) => sum + value * value, 0) / one.degrees;
-    if (freer.verdict === "holds" || square(freer) < square(fit)) fit = freer;
+    if (freer.verdict === "holds" || meanSquare(freer) < meanSquare(fit)) fit = freer;
     const outlier =
       freer.verdict === "holds"
         ? null
         : (outlierOf(samples, scale, noise, known, false, suspects) ??
           outlierOf(samples, scale, noise, known, true, ranked(freer).slice(0, 1)));
-    if (outlier !== null) {
-      const hz = Number((omega[outlier] / (2 * Math.PI)).toPrecision(4));
-      fit = { ...fit, worst: outlier, reason: `the point at ${hz} Hz does not fit; without it the relations hold` };
-    }
+    if (outlier !== null) fit = { ...fit, ...alone(outlier), verdict: fit.verdict };
   }
   const { residual, degrees } = fit;
   const rest = (row: number, k: number) => residual[row] * scale[k];
-  let meanSquare = 0;
-  for (let k = 0; k < count; k++) meanSquare += rest(2 * k, k) ** 2 + rest(2 * k + 1, k) ** 2;
+  let squares = 0;
+  for (let k = 0; k < count; k++) squares += rest(2 * k, k) ** 2 + rest(2 * k + 1, k) ** 2;
 
   const typical = (fit.reference * meanOf(scale)) / largest;
   const decades = Math.log10(omega[count - 1] / omega[0]);
   const violation = (typical * failsAt) / Math.sqrt(degrees);
   return {
     verdict: fit.verdict,
-    rmsResidual: Math.sqrt(meanSquare / count) / largest,
+    rmsResidual: Math.sqrt(squares / count) / largest,
     worst: fit.worst,
     reason: fit.reason,
     detectable: {
@@ -370,6 +427,6 @@ export function kramersKronig(
       re: Array.from({ length: count }, (_, k) => re[k] - rest(2 * k, k)),
       im: Array.from({ length: count }, (_, k) => im[k] - rest(2 * k + 1, k)),
     },
-    deviation: Math.sqrt(meanSquare / degrees),
+    deviation: Math.sqrt(squares / degrees),
   };
 }

@@ -22,8 +22,16 @@ const subtractScaled = (target: Float64Array, factor: number, column: Float64Arr
   for (let k = 0; k < target.length; k++) target[k] -= factor * column[k];
 };
 
-/** Minimise ‖target − Σ c_j column_j‖; a column within `dependence` (relative) of those before it is left out. */
-export function leastSquares(columns: Float64Array[], target: Float64Array, dependence = 1e-13): LeastSquares {
+/**
+ * Minimise ‖target − Σ c_j column_j‖; a column is left out whose part that is not in those before it is within
+ * `dependence` of its length, or within `least`.
+ */
+export function leastSquares(
+  columns: Float64Array[],
+  target: Float64Array,
+  dependence = 1e-13,
+  least = 0,
+): LeastSquares {
   const count = columns.length;
   const basis: (Float64Array | null)[] = [];
   const triangle = columns.map(() => new Float64Array(count));
@@ -44,7 +52,7 @@ export function leastSquares(columns: Float64Array[], target: Float64Array, depe
       }
     }
     const rest = Math.sqrt(dot(vector, vector));
-    if (!(rest > dependence * length)) basis.push(null);
+    if (!(rest > Math.max(dependence * length, least))) basis.push(null);
     else {
       triangle[j][j] = rest;
       for (let k = 0; k < vector.length; k++) vector[k] /= rest;

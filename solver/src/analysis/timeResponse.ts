@@ -9,9 +9,10 @@
  * A lock-in amplifier with a sinusoidal reference reads the fundamental of a square wave 0…1, whose peak is 2/π and whose
  * root mean square is √2/π (Fourier series of the square wave).
  */
+
+import { add, type Complex, complex, divide, modulus, multiply, scale, subtract } from "../numerics/complex.ts";
 import { evaluate, fitRational, poles, residue } from "./aaa.ts";
 import type { Curve } from "./arcs.ts";
-import { add, type Complex, complex, divide, modulus, multiply, scale, subtract } from "./complexNumber.ts";
 
 /** One pole, or one of a conjugate pair; the conjugate is understood. */
 interface Mode {

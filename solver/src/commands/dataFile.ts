@@ -28,6 +28,9 @@ const isTechnique = (text: string): text is Technique => techniques.some((techni
 const numberOf = (text: string): number =>
   /^[+-]?(\d+\.?\d*|\.\d+)([eE][+-]?\d+)?$/.test(text) ? Number(text) : Number.NaN;
 
+/** Sizes of data other than 0, so that neither squares nor their ratios leave the range of numbers. */
+const sizes = { min: 1e-50, max: 1e50 };
+
 const inside = (value: number, { min, max }: { min: number; max: number }): boolean => value >= min && value <= max;
 
 function biasOf(text: string): Bias | null {
@@ -84,6 +87,8 @@ export function parseDataFile(text: string, name: string): DataFile {
       if (!Number.isFinite(value)) fault(line, `${column} is "${cell}"`, "a number");
       else if (column === "frequencyHz" && !inside(value, quantities.frequencyHz))
         fault(line, `frequencyHz is ${cell}`, permitted(quantities.frequencyHz));
+      else if (value !== 0 && !inside(Math.abs(value), sizes))
+        fault(line, `${column} is ${cell}`, `0, or a size of ${sizes.min} to ${sizes.max}`);
       else if (column === "sigma" && !(value > 0)) fault(line, `sigma is ${cell}`, "above 0");
     });
   };
