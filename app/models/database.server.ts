@@ -4,7 +4,7 @@
  * @libsql/client 0.18.0 can acknowledge writes and lose them after one SQLITE_BUSY (its failed statement is never reset),
  * so every write passes one gate in `write` mode, and at the first BUSY the client is thrown away and opened anew.
  */
-import { closeSync, mkdirSync, openSync, rmSync, statSync } from "node:fs";
+import { accessSync, closeSync, constants, mkdirSync, openSync, rmSync, statSync } from "node:fs";
 import { join } from "node:path";
 import { setTimeout as sleep } from "node:timers/promises";
 import { pathToFileURL } from "node:url";
@@ -12,7 +12,7 @@ import { type Client, createClient, type InStatement, type InValue, type ResultS
 import { drizzle, type LibSQLDatabase } from "drizzle-orm/libsql";
 import { migrate } from "drizzle-orm/libsql/migrator";
 import { readMigrationFiles } from "drizzle-orm/migrator";
-import { projectFolder, settings } from "~/services/settings.server";
+import { projectFolder, SettingsError, settings } from "~/services/settings.server";
 
 interface Handle {
   client: Client;
@@ -84,10 +84,19 @@ export function write(...queries: [Query, ...Query[]]): Promise<ResultSet[]> {
   });
 }
 
-/** Opens the file, takes a backup if it is about to change, applies what migrations are missing. Once, before listening. */
+/**
+ * Opens the file, takes a backup if it is about to change, applies what migrations are missing. Once, before listening.
+ * @throws SettingsError where the data folder cannot be written
+ */
 export async function prepareDatabase(migrationsFolder = join(projectFolder, "drizzle/migrations")): Promise<void> {
   const folder = settings().dataFolder;
-  mkdirSync(folder, { recursive: true });
+  try {
+    mkdirSync(folder, { recursive: true });
+    accessSync(folder, constants.W_OK);
+  } catch (error) {
+    const code = error instanceof Error && "code" in error ? error.code : error;
+    throw new SettingsError(`DATA_DIR is ${folder}, which is no folder that can be written (${code}).`);
+  }
   const lock = join(folder, "migrating.lock");
   const release = await acquire(lock);
   try {

@@ -64,15 +64,18 @@ describe("settings", () => {
     expect(complaint({ MAIL_URL: "smtp//user:hunter2@mail", SECRET: "hunter2" })).not.toContain("hunter2");
   });
 
-  it("stop the built server in plain words, without a stack, with code 2", async () => {
-    const environment = { PATH: process.env.PATH, HOST: "0.0.0.0", DATA_DIR: process.env.DATA_DIR };
+  it.each([
+    ["plain http", { HOST: "0.0.0.0" }, /^Plain http is refused for [^\n]+\n$/],
+    ["a data folder that is a file", { DATA_DIR: "package.json" }, /^DATA_DIR is \S+, which is no folder [^\n]+\n$/],
+  ])("stop the built server in plain words, without a stack, with code 2: %s", async (_, given, words) => {
+    const environment = { PATH: process.env.PATH, PORT: "0", DATA_DIR: process.env.DATA_DIR, ...given };
     const refused = await promisify(execFile)(process.execPath, ["app/server/serve.mjs"], { env: environment }).catch(
       (error) => error,
     );
     expect(refused).toMatchObject({
       code: 2,
       stdout: "",
-      stderr: expect.stringMatching(/^Plain http is refused for [^\n]+\n$/),
+      stderr: expect.stringMatching(words),
     });
   });
 });
