@@ -50,7 +50,7 @@ describe("the shell", () => {
     await page.getByRole("heading", { name: "Sunniva Brekk" }).waitFor();
     expect(new URL(page.url()).pathname).toBe("/account");
     await page.getByRole("button", { name: "Sign out" }).click();
-    await page.getByRole("link", { name: "Sign in" }).waitFor();
+    await page.getByRole("banner").getByRole("link", { name: "Sign in" }).waitFor();
   });
 
   it("keeps what was typed when an address cannot be used", async () => {
@@ -69,7 +69,7 @@ describe("the shell", () => {
     const { page } = await visit({ scripts: false });
     await page.goto("/");
     await page.getByRole("button", { name: "as viewer" }).click();
-    await page.getByRole("heading", { name: "Halden thin-film group" }).waitFor();
+    await page.getByRole("heading", { level: 1, name: "p-i-n perovskite, mobile cations" }).waitFor();
     await page.getByRole("button", { name: "dark", exact: true }).click();
     await page.locator("html[data-theme=dark]").waitFor();
   });
@@ -91,7 +91,8 @@ describe("the shell", () => {
   });
 
   it("moves the focus to the heading of a new page, and offers the way past the header first", async () => {
-    const { page } = await visit({ role: "viewer" });
+    const { page, labPath } = await visit({ role: "viewer" });
+    await page.goto(labPath);
     await hydrated(page);
     await page.keyboard.press("Tab");
     expect(await page.evaluate(() => document.activeElement?.textContent)).toBe("Skip to the content");
