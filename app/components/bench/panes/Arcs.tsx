@@ -5,6 +5,7 @@ import { formatFixed, formatNumber, formatUnit, thinSpace } from "~/lib/numberFo
 import { plainText } from "~/lib/richText";
 import { predictionId } from "../spectrumSeries";
 import { DetailState } from "./DetailState";
+import { PaneChoice } from "./PaneChoice";
 import type { PaneContext } from "./pane";
 
 /** The arcs of the spectrum on screen; a row that is pointed at or focused lights its arc in the plots. */
@@ -15,20 +16,12 @@ export function Arcs({ arcs, series, spectrum }: PaneContext) {
   return (
     <>
       {curves.length > 1 && (
-        <label className="mb-2 flex items-baseline gap-2">
-          <span className="text-ink-soft">arcs of</span>
-          <select
-            className="min-w-0 rounded bg-transparent py-0.5 text-tide"
-            value={arcs.series?.id ?? predictionId}
-            onChange={(event) => choose(event.currentTarget.value)}
-          >
-            {curves.map(({ id, label }) => (
-              <option key={id} value={id} className="bg-sheet text-ink">
-                {plainText(label)}
-              </option>
-            ))}
-          </select>
-        </label>
+        <PaneChoice
+          words="arcs of"
+          value={arcs.series?.id ?? predictionId}
+          options={curves.map(({ id, label }) => ({ id, label: plainText(label) }))}
+          onChoose={choose}
+        />
       )}
       <DetailState detail={detail}>
         {({ arcs: found, noise }) =>

@@ -9,6 +9,7 @@ import { formatNumber } from "~/lib/numberFormat";
 import { useDetail } from "~/workers/useDetail";
 import { useAddressChoice } from "../useAddressChoice";
 import { DetailState } from "./DetailState";
+import { PaneChoice } from "./PaneChoice";
 import type { PaneContext } from "./pane";
 
 interface PreBias {
@@ -76,22 +77,7 @@ export function CurrentVoltage({ document, waiting }: PaneContext) {
   }, [detail.value]);
   return (
     <>
-      {ions && (
-        <label className="mb-2 flex items-baseline gap-2">
-          <span className="text-ink-soft">ions held as they stand at</span>
-          <select
-            className="min-w-0 rounded bg-transparent py-0.5 text-tide"
-            value={start.id}
-            onChange={(event) => choose(event.currentTarget.value)}
-          >
-            {preBiases.map(({ id, label }) => (
-              <option key={id} value={id} className="bg-sheet text-ink">
-                {label}
-              </option>
-            ))}
-          </select>
-        </label>
-      )}
+      {ions && <PaneChoice words="ions held as they stand at" value={start.id} options={preBiases} onChoose={choose} />}
       <DetailState detail={detail}>
         {({ light, held, dark }) => {
           const shortCircuit = Math.abs(light.shortCircuitMAPerCm2 ?? 0);

@@ -10,6 +10,7 @@ import { useDetail } from "~/workers/useDetail";
 import { useAddressChoice } from "../useAddressChoice";
 import { DetailState } from "./DetailState";
 import { LayerEdges } from "./LayerEdges";
+import { PaneChoice } from "./PaneChoice";
 import type { PaneContext } from "./pane";
 
 interface Choice {
@@ -86,24 +87,18 @@ export function HarmonicOverDepth({ document, spectrum, linked, waiting }: PaneC
   const series = useMemo(() => (detail.value ? seriesOf(detail.value, choice) : []), [detail.value, choice]);
   return (
     <>
-      <label className="mb-2 flex flex-wrap items-baseline gap-x-2">
-        <span className="text-ink-soft">
-          {spectrum && techniqueNames[spectrum.technique]} at the cursor's{" "}
-          <RichText text={formatPrefixed(frequencyHz, "Hz")} />, per{" "}
-          {spectrum?.technique === "impedance" ? "volt" : "relative change of the light"}; lines Re, dashes Im
-        </span>
-        <select
-          className="rounded bg-transparent py-0.5 text-tide"
-          value={choice.id}
-          onChange={(event) => choose(event.currentTarget.value)}
-        >
-          {choices.map(({ id, label }) => (
-            <option key={id} value={id} className="bg-sheet text-ink">
-              {label}
-            </option>
-          ))}
-        </select>
-      </label>
+      <PaneChoice
+        words={
+          <>
+            {spectrum && techniqueNames[spectrum.technique]} at the cursor's{" "}
+            <RichText text={formatPrefixed(frequencyHz, "Hz")} />, per{" "}
+            {spectrum?.technique === "impedance" ? "volt" : "relative change of the light"}; lines Re, dashes Im
+          </>
+        }
+        value={choice.id}
+        options={choices}
+        onChoose={choose}
+      />
       <DetailState detail={detail}>
         {() => (
           <XYPlot

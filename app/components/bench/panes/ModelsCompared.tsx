@@ -9,6 +9,7 @@ import { modelNames, techniqueSymbols } from "~/lib/spectrumNames";
 import { useDetail } from "~/workers/useDetail";
 import { useAddressChoice } from "../useAddressChoice";
 import { DetailState } from "./DetailState";
+import { PaneChoice } from "./PaneChoice";
 import type { PaneContext } from "./pane";
 
 /** Distance of two spectra at each frequency, in % of the largest modulus of the second. */
@@ -72,20 +73,12 @@ export function ModelsCompared({ document, spectrum, shown, linked, waiting }: P
   const worst = distance.percent.reduce((most, percent, index) => (percent > distance.percent[most] ? index : most), 0);
   return (
     <>
-      <label className="mb-2 flex flex-wrap items-baseline gap-x-2">
-        <span className="text-ink-soft">{modelNames[kind]}, against</span>
-        <select
-          className="rounded bg-transparent py-0.5 text-tide"
-          value={other}
-          onChange={(event) => choose(event.currentTarget.value)}
-        >
-          {others.map((one) => (
-            <option key={one} value={one} className="bg-sheet text-ink">
-              {modelNames[one]}
-            </option>
-          ))}
-        </select>
-      </label>
+      <PaneChoice
+        words={`${modelNames[kind]}, against`}
+        value={other}
+        options={others.map((one) => ({ id: one, label: modelNames[one] }))}
+        onChoose={choose}
+      />
       <DetailState detail={detail}>
         {(result) =>
           result.status !== "solved" ? (

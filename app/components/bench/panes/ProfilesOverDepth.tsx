@@ -7,6 +7,7 @@ import { useAddressChoice } from "../useAddressChoice";
 import { DetailState } from "./DetailState";
 import { depthPlots, depthSeries } from "./depthSeries";
 import { LayerEdges } from "./LayerEdges";
+import { PaneChoice } from "./PaneChoice";
 import type { PaneContext } from "./pane";
 
 /** Profiles over depth in the steady state of the spectrum on screen. */
@@ -24,20 +25,12 @@ export function ProfilesOverDepth({ document, spectrum, waiting }: PaneContext) 
   const series = useMemo(() => (detail.value ? depthSeries(detail.value, plot) : []), [detail.value, plot]);
   return (
     <>
-      <label className="mb-2 flex items-baseline gap-2">
-        <span className="text-ink-soft">over depth, at {spectrum ? biasWords(spectrum.bias) : "–"}</span>
-        <select
-          className="rounded bg-transparent py-0.5 text-tide"
-          value={plot.id}
-          onChange={(event) => choose(event.currentTarget.value)}
-        >
-          {depthPlots.map(({ id, label }) => (
-            <option key={id} value={id} className="bg-sheet text-ink">
-              {label}
-            </option>
-          ))}
-        </select>
-      </label>
+      <PaneChoice
+        words={`over depth, at ${spectrum ? biasWords(spectrum.bias) : "–"}`}
+        value={plot.id}
+        options={depthPlots}
+        onChoose={choose}
+      />
       <DetailState detail={detail}>
         {() => (
           <XYPlot
